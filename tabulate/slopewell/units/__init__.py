@@ -1,0 +1,29 @@
+"""Units and physical constants."""
+
+from .system import (
+    Dimension,
+    Quantity,
+    Unit,
+    UnitError,
+    UnitSystem,
+    dimension,
+    quantity,
+    ratio,
+    temperature,
+    unit,
+    unit_system,
+)
+
+__all__ = [
+    "Dimension",
+    "Quantity",
+    "Unit",
+    "UnitError",
+    "UnitSystem",
+    "dimension",
+    "quantity",
+    "ratio",
+    "temperature",
+    "unit",
+    "unit_system",
+]

@@ -21,12 +21,15 @@ class Problem:
         How to mend it.
     excerpt : str
         The faulty text with a caret line under the place; empty where there is none.
+    line : int or None
+        The line of the file, where it is known.
     """
 
     at: str
     says: str
     remedy: str = ""
     excerpt: str = ""
+    line: int | None = None
 
 
 class UnusableInput(ValueError):
@@ -51,9 +54,9 @@ def nearest(name: str, known: Iterable[str]) -> str:
     Examples
     --------
     >>> nearest("sigm", ["epsilon", "sigma"])
-    'did you mean "sigma"? Known here: epsilon, sigma.'
+    'Did you mean "sigma"? Known here: epsilon, sigma.'
     """
     names = sorted(known)
     listing = f"Known here: {', '.join(names)}." if names else "None is known here."
     close = difflib.get_close_matches(name, names, n=1)
-    return f'did you mean "{close[0]}"? {listing}' if close else listing
+    return f'Did you mean "{close[0]}"? {listing}' if close else listing

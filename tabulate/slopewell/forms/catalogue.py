@@ -119,7 +119,7 @@ def form(name: str) -> Form:
         With the nearest known name.
     """
     if name not in catalogue():
-        raise UnusableInput([Problem("", f'There is no form "{name}".', nearest(name, catalogue()).capitalize())])
+        raise UnusableInput([Problem("", f'There is no form "{name}".', nearest(name, catalogue()))])
     return catalogue()[name]
 
 

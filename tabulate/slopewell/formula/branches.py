@@ -9,13 +9,15 @@ from __future__ import annotations
 from dataclasses import dataclass
 from fractions import Fraction
 
-from .balls import Ball, Undecided, enclose, series
+from .balls import Ball, Undecided, ball, enclose, series
 from .bind import simplify
 from .roots import isolate, nearest_fraction
-from .tree import ZERO, Apply, Choice, Tree, add, children, negate
+from .tree import COORDINATE, ZERO, Apply, Choice, Tree, add, children, names, negate, walk
 
 MOST_BRANCHES = 500
 """Branch points a formula may have on its range."""
+MOST_COMPARISONS = 200
+"""Different comparisons a formula may have."""
 
 
 @dataclass(frozen=True, slots=True)
@@ -47,8 +49,15 @@ def resolve(tree: Tree, start: Fraction, end: Fraction) -> tuple[Piece, ...]:
     Raises
     ------
     TooManyBranches
-        If there are more than 500 branch points, or where two sides of a comparison agree over a stretch.
+        If there are more than 500 branch points or 200 different comparisons, or where two sides
+        of a comparison agree over a stretch.
     """
+    if len({node for node in walk(tree) if _chooses(node)}) > MOST_COMPARISONS:
+        raise TooManyBranches(f"more than {MOST_COMPARISONS} comparisons")
+    return _resolve(tree, start, end)
+
+
+def _resolve(tree: Tree, start: Fraction, end: Fraction) -> tuple[Piece, ...]:
     choice = _innermost_choice(tree)
     if choice is None:
         return (Piece(start, end, tree),)
@@ -60,7 +69,7 @@ def resolve(tree: Tree, start: Fraction, end: Fraction) -> tuple[Piece, ...]:
         positive = _positive(gap, (low + high) / 2, high - low)
         settled = replace(tree, choice, answers[positive])
         closed = True if high == end else answers[_at(choice, gap)] is answers[positive]
-        pieces.extend(_close_last(resolve(settled, low, high), closed))
+        pieces.extend(_close_last(_resolve(settled, low, high), closed))
         if len(pieces) > MOST_BRANCHES:
             raise TooManyBranches(f"more than {MOST_BRANCHES} branch points")
     return _merge(pieces)
@@ -88,9 +97,11 @@ def _innermost_choice(tree: Tree) -> Tree | None:
         found = _innermost_choice(child)
         if found is not None:
             return found
-    if isinstance(tree, Choice) or (isinstance(tree, Apply) and tree.function in ("abs", "min", "max")):
-        return tree
-    return None
+    return tree if _chooses(tree) else None
+
+
+def _chooses(tree: Tree) -> bool:
+    return isinstance(tree, Choice) or (isinstance(tree, Apply) and tree.function in ("abs", "min", "max"))
 
 
 def _gap(choice: Tree) -> tuple[Tree, dict[bool, Tree]]:
@@ -120,8 +131,6 @@ def _turning_points(gap: Tree, start: Fraction, end: Fraction) -> list[Fraction]
 
     if not _moves(gap):
         return []
-    from .balls import ball
-
     found = isolate(enclosure, ball(start), ball(end))
     if len(found.found) + len(found.undecided) > MOST_BRANCHES:
         raise TooManyBranches("the sides of a comparison can't be told apart")
@@ -134,15 +143,11 @@ def _turning_points(gap: Tree, start: Fraction, end: Fraction) -> list[Fraction]
 
 
 def _moves(gap: Tree) -> bool:
-    from .tree import COORDINATE, names
-
     return COORDINATE in names(gap)
 
 
 def _positive(gap: Tree, middle: Fraction, width: Fraction) -> bool:
     """Return the sign of the gap inside a stretch; an exact zero everywhere counts as positive."""
-    from .balls import ball
-
     for shift in (Fraction(0), Fraction(1, 7), Fraction(-2, 11)):
         value = series(gap, ball(middle + shift * width), 0)[0]
         if value > 0:

@@ -6,9 +6,10 @@ from collections.abc import Mapping
 from fractions import Fraction
 from typing import Any
 
+from .bind import bind
 from .parse import FormulaError
 from .text import write
-from .tree import Apply, Choice, Constant, Name, Number, Place, Tree
+from .tree import Apply, Choice, Constant, Name, Number, Place, Tree, names
 
 Dimension = Any
 """pint's ``UnitsContainer`` of a quantity's dimensionality."""
@@ -74,7 +75,7 @@ class _Reading:
                 return self.power(tree)
             case Apply(function="sqrt"):
                 found = self.of(tree.arguments[0])
-                return ANY if found is ANY else found**0.5
+                return ANY if found is ANY else found ** Fraction(1, 2)
             case Apply():
                 return self.transcendental(tree)
 
@@ -118,22 +119,13 @@ class _Reading:
         if fixed is None:
             says = f"A base that is {describe(found)} needs a fixed number as its exponent."
             raise FormulaError(self.text, tree.signs[0], says, "Divide the base by a length, say (sigma/r)^n.")
-        return found ** (int(fixed) if fixed.denominator == 1 else float(fixed))
+        return found ** (int(fixed) if fixed.denominator == 1 else fixed)
 
     def number(self, tree: Tree) -> Fraction | None:
-        match tree:
-            case Number():
-                return tree.value
-            case Name() if tree.name in self.values:
-                return self.values[tree.name]
-            case Apply(function="negate"):
-                inner = self.number(tree.arguments[0])
-                return None if inner is None else -inner
-            case Apply(function="/"):
-                top, bottom = (self.number(part) for part in tree.arguments)
-                return top / bottom if top is not None and bottom else None
-            case _:
-                return None
+        if not names(tree) <= self.values.keys():
+            return None
+        bound = bind(tree, self.values)
+        return bound.value if isinstance(bound, Number) else None
 
     def transcendental(self, tree: Apply) -> Dimension:
         for argument in tree.arguments:

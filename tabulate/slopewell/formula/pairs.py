@@ -9,6 +9,7 @@ from __future__ import annotations
 
 from dataclasses import dataclass
 from fractions import Fraction
+from math import inf, isfinite
 from typing import Any
 
 import numpy as np
@@ -84,8 +85,18 @@ def _split(x: Any) -> tuple[Any, Any]:
 
 def pair(value: Fraction) -> Pair:
     """Return the pair nearest to an exact value."""
-    high = float(value)
-    return Pair(high, float(value - Fraction(high)))
+    high = double(value)
+    low = double(value - Fraction(high)) if isfinite(high) else 0.0
+    # NumPy's kind of double, because Python's own refuses to be divided by zero.
+    return Pair(np.float64(high), np.float64(low))
+
+
+def double(value: Fraction | int) -> float:
+    """Return the double nearest to an exact value; infinite beyond the largest one."""
+    try:
+        return float(value)
+    except OverflowError:
+        return inf if value > 0 else -inf
 
 
 def converted(values: Array, factor: Fraction) -> Pair:

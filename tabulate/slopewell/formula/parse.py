@@ -3,17 +3,18 @@
 from __future__ import annotations
 
 import ast
+import keyword
 import re
 import warnings
 from fractions import Fraction
 
 from ..problems import Problem, UnusableInput, nearest
-from .tree import Apply, Choice, Name, Number, Place, Tree, negate
+from .tree import Apply, Choice, Name, Number, Place, Tree, depth, negate
 
 LONGEST = 100_000
 """Characters a formula may have."""
-DEEPEST = 200
-"""Levels of brackets a formula may have."""
+DEEPEST = 150
+"""Levels of brackets, and of operations one in the other, a formula may have."""
 LARGEST_EXPONENT = 1000
 """Size up to which a literal exponent is taken."""
 
@@ -31,6 +32,9 @@ CONSTANTS = ("pi", "kB", "ke")
 COMPARISONS = {ast.Lt: "<", ast.LtE: "<=", ast.Gt: ">", ast.GtE: ">="}
 LITERAL = re.compile(r"(\d{1,60}(\.\d{0,60})?|\.\d{1,60})([eE][+-]?\d{1,3})?")
 FOREIGN = re.compile(r"[^A-Za-z0-9_.+\-*/^()<>=,\s]")
+TOKEN = re.compile(r"[A-Za-z_][A-Za-z0-9_]*|(?:\d+\.?\d*|\.\d+)(?:[eE][+-]?\d+)?|\S")
+OPERAND_ENDS = re.compile(r"[A-Za-z0-9_)]")
+OPERAND_STARTS = re.compile(r"[A-Za-z0-9_(]|\.\d")
 WINDOW = 60
 
 
@@ -91,6 +95,7 @@ def _refuse_outsize(text: str) -> None:
         says = f"The character {found.group()!r} has no meaning in a formula."
         raise FormulaError(text, found.span(), says, "Use + - * / ^ ( ) , < > numbers and names.")
     _refuse_brackets(text)
+    _refuse_neighbours(text)
 
 
 def _refuse_brackets(text: str) -> None:
@@ -109,6 +114,21 @@ def _refuse_brackets(text: str) -> None:
     if opened:
         says = "This bracket is never closed."
         raise FormulaError(text, (opened[-1], opened[-1] + 1), says, "Close it.")
+
+
+def _refuse_neighbours(text: str) -> None:
+    """Refuse two operands without an operator between them, and words that Python keeps for itself."""
+    before = ""
+    for found in TOKEN.finditer(text):
+        token = found.group()
+        if keyword.iskeyword(token):
+            says = f'"{token}" is a reserved word and can\'t be used in a formula.'
+            raise FormulaError(text, found.span(), says, f"Take another name, such as {token}_0.")
+        called = token == "(" and before[:1].isidentifier()
+        if OPERAND_ENDS.match(before[-1:]) and OPERAND_STARTS.match(token) and not called:
+            says = "An operator is missing before this."
+            raise FormulaError(text, found.span(), says, "Write every product with *.")
+        before = token
 
 
 def _as_python(text: str) -> tuple[str, list[int]]:
@@ -157,11 +177,14 @@ class _Parser:
 
     def expression(self, root: ast.expr) -> Tree:
         try:
-            return self.read(root)
+            tree = self.read(root)
+            fits = depth(tree) <= DEEPEST
         except RecursionError:
-            raise FormulaError(
-                self.text, (0, 1), "The formula is nested too deeply.", "Split the formula into terms."
-            ) from None
+            fits = False
+        if not fits:
+            says = f"The formula is nested deeper than {DEEPEST} levels."
+            raise FormulaError(self.text, (0, 1), says, "Split the formula into terms.")
+        return tree
 
     def read(self, node: ast.expr) -> Tree:
         match node:
@@ -249,13 +272,13 @@ class _Parser:
         assert isinstance(node.func, ast.Name)
         name = node.func.id
         if name not in FUNCTIONS:
-            raise self.refuse(node.func, f'There is no function "{name}".', nearest(name, FUNCTIONS).capitalize())
-        wanted = FUNCTIONS[name]
-        if node.keywords or len(node.args) != wanted:
-            count = len(node.args) + len(node.keywords)
-            raise self.refuse(
-                node, f"{name} takes {wanted} argument{'s' if wanted > 1 else ''}, not {count}.", f"Mend {name}(…)."
-            )
+            raise self.refuse(node.func, f'There is no function "{name}".', nearest(name, FUNCTIONS))
+        wanted, given = FUNCTIONS[name], len(node.args)
+        if node.keywords:
+            raise self.refuse(node.keywords[0], "An argument has no name here.", f"Write {name}(…) with values.")
+        if given != wanted:
+            says = f"{name} takes {wanted} argument{'s' if wanted > 1 else ''}, not {given}."
+            raise self.refuse(node, says, f"Mend {name}(…).")
         if name == "where":
             return self.choice(node)
         arguments = tuple(self.read(argument) for argument in node.args)

@@ -18,12 +18,14 @@ from numpy.typing import NDArray
 
 from .balls import fraction
 from .functions import HEADS, Head
-from .pairs import Pair, pair
+from .pairs import Pair, double, pair
 from .tree import Apply, Choice, Constant, Name, Number, Tree
 
 Array = NDArray[np.float64]
 Series = list[Any]
 
+LARGEST_WHOLE_POWER = 2**20
+"""Size up to which a whole power is a chain of products, each right to rounding."""
 BLOCK = 4096
 """Separations worked on at a time, so that intermediate arrays stay in the fast cache."""
 
@@ -100,7 +102,7 @@ class Reading:
 
     def number(self, value: Fraction | int) -> Any:
         """Return a number in this reading's own kind."""
-        return pair(Fraction(value)) if self.paired else float(value)
+        return pair(Fraction(value)) if self.paired else np.float64(double(value))
 
     def head(self, name: str, x: Any, *, order: int = 0) -> Any:
         """Return an elementary function of a leading coefficient."""
@@ -132,14 +134,12 @@ class Reading:
         if not isinstance(exponent, Number):
             return exp(self, product(self, self.of(exponent), log(self, self.of(base))))
         n = exponent.value
-        if n.denominator == 1:
+        if n.denominator == 1 and abs(n) <= LARGEST_WHOLE_POWER:
             return self.whole_power(base, int(n))
         if n.denominator == 2:
-            root = Apply("sqrt", (base,))
             key = ("root", id(base))
             if key not in self.known:
-                self.known[key] = self.of(base) and sqrt(self, self.of(base))
-                self.known[id(root)] = self.known[key]
+                self.known[key] = sqrt(self, self.of(base))
             return self.series_power(self.known[key], n.numerator)
         return real_power(self, self.of(base), n)
 
@@ -329,7 +329,7 @@ def sqrt(reading: Reading, x: Series) -> Series:
 
 
 def real_power(reading: Reading, x: Series, n: Fraction) -> Series:
-    """Return a power that is neither whole nor half."""
+    """Return a power that is neither whole nor half, or a huge one."""
     result = [reading.head("power", x[0], order=n)]  # type: ignore[arg-type]
     if len(x) == 1:
         return result
@@ -361,22 +361,22 @@ sinh_and_cosh = _turning("sinh", "cosh", 1)
 
 def tan(reading: Reading, x: Series) -> Series:
     """Return the tangent, from t′ = (1 + t²) x′."""
-    return _self_slope(reading, x, "tan", 1)
+    result = [reading.head("tan", x[0])]
+    for k in range(1, reading.order + 1 if len(x) > 1 else 1):
+        slope = total(reading, [reading.number(1)], square(reading, result))
+        result.append(_weighted(reading, x, slope[:k], k))
+    return result
 
 
 def tanh(reading: Reading, x: Series) -> Series:
-    """Return the hyperbolic tangent, from t′ = (1 − t²) x′."""
-    return _self_slope(reading, x, "tanh", -1)
-
-
-def _self_slope(reading: Reading, x: Series, name: str, sign: int) -> Series:
-    result = [reading.head(name, x[0])]
-    for k in range(1, reading.order + 1 if len(x) > 1 else 1):
-        squared = square(reading, result)
-        slope = [reading.number(1) + (squared[0] if sign > 0 else -squared[0])]
-        slope += squared[1:k] if sign > 0 else [-c for c in squared[1:k]]
-        result.append(_weighted(reading, x, slope, k))
-    return result
+    """Return the hyperbolic tangent, from its slope 4u/(1 + u)² with u = exp(−2|x|), free of cancellation."""
+    head = reading.head("tanh", x[0])
+    if len(x) == 1 or reading.order == 0:
+        return [head]
+    u = exp(reading, [c * reading.number(-2) for c in absolute(reading, x)])
+    below = square(reading, total(reading, [reading.number(1)], u))
+    slope = quotient(reading, [c * reading.number(4) for c in u], below)
+    return primitive(reading, head, slope, x)
 
 
 def _error_function(name: str, sign: int) -> Callable[[Reading, Series], Series]:

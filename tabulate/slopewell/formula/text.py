@@ -2,12 +2,15 @@
 
 from __future__ import annotations
 
+from decimal import Decimal, localcontext
 from fractions import Fraction
 
 from .tree import Apply, Choice, Constant, Name, Number, Tree
 
 SUM, PRODUCT, NEGATE, POWER, ATOM = range(5)
 """How tightly a piece of text holds together."""
+DIGITS = 60
+"""Digits up to which a number is written as a decimal."""
 
 
 def write(tree: Tree) -> str:
@@ -20,7 +23,7 @@ def _piece(tree: Tree) -> tuple[str, int]:
         case Number():
             return _number(tree.value)
         case Constant():
-            return f"{float(tree.ball.mid()):.17g}", ATOM
+            return f"{float(tree.ball.mid()):.17g}", NEGATE if tree.ball < 0 else ATOM
         case Name():
             return tree.name, ATOM
         case Choice():
@@ -67,8 +70,8 @@ def _number(value: Fraction) -> tuple[str, int]:
         return f"-{_number(-value)[0]}", NEGATE
     if value.denominator == 1 and value < 10**15:
         return str(value.numerator), ATOM
-    decimal = f"{float(value):.17g}"
-    for digits in range(1, 17):
-        if Fraction(short := f"{float(value):.{digits}g}") == value:
-            return short, ATOM
-    return (decimal, ATOM) if Fraction(decimal) == value else (f"{value.numerator}/{value.denominator}", PRODUCT)
+    with localcontext(prec=DIGITS):
+        decimal = (Decimal(value.numerator) / Decimal(value.denominator)).normalize()
+    if Fraction(decimal) == value:
+        return str(decimal).replace("E+", "e").replace("E", "e"), ATOM
+    return f"{value.numerator}/{value.denominator}", PRODUCT

@@ -95,6 +95,11 @@ def walk(tree: Tree) -> Iterator[Tree]:
         yield from walk(child)
 
 
+def depth(tree: Tree) -> int:
+    """Return how many nodes lie one in the other."""
+    return 1 + max(map(depth, children(tree)), default=0)
+
+
 def names(tree: Tree) -> frozenset[str]:
     """Return the names that occur in a tree, the separation included."""
     return frozenset(node.name for node in walk(tree) if isinstance(node, Name))

@@ -5,6 +5,7 @@ from __future__ import annotations
 import re
 import unicodedata
 from dataclasses import dataclass
+from decimal import Decimal, localcontext
 from fractions import Fraction
 from functools import cache
 from importlib.resources import files
@@ -17,9 +18,9 @@ Dimension = Any
 
 NUMBER = r"[-+]?(?:\d{1,60}(?:\.\d{0,60})?|\.\d{1,60})(?:[eE][-+]?\d{1,3})?"
 QUANTITY = re.compile(rf"\s*({NUMBER})\s*(.*?)\s*", re.DOTALL)
-UNIT = re.compile(r"[A-Za-zÅ_0-9*/^()+\-. ]{0,80}")
-POWER = re.compile(r"(?:\^|\*\*)\s*\(?\s*[-+]?\d{3,}")
-WAVENUMBER = re.compile(r"\bcm\s*(?:\^|\*\*)\s*\(?\s*-\s*1\s*\)?")
+POWER = re.compile(r"(?<=[A-Za-z])\^(?:[-+]?\d{1,2}(?:\.\d{1,2})?|\([-+]?\d{1,2}(?:[./]\d{1,2})?\))(?![\d.])")
+UNIT = re.compile(r"(?!.*//)(?:1|1/)?[A-Za-z_*/() ]{0,80}")
+WAVENUMBER = re.compile(r"\bcm\^(?:-1|\(-1\))(?![\d.])")
 SUPERSCRIPTS = str.maketrans("⁰¹²³⁴⁵⁶⁷⁸⁹⁻", "0123456789-")
 
 
@@ -106,8 +107,8 @@ def unit(text: str) -> Unit:
         If it names none.
     """
     plain = _plain(text)
-    readable = WAVENUMBER.sub("wavenumber", plain).replace("·", "*")
-    if not UNIT.fullmatch(readable) or POWER.search(readable):
+    readable = WAVENUMBER.sub("wavenumber", plain)
+    if not UNIT.fullmatch(POWER.sub("", readable)):
         raise UnitError(f'"{text[:60]}" is not a unit.', KNOWN)
     try:
         parsed = registry().Quantity(Fraction(1), registry().parse_units(readable.replace("^", "**")))
@@ -128,7 +129,8 @@ KNOWN = (
 def _plain(text: str) -> str:
     composed = unicodedata.normalize("NFC", text).strip()
     raised = re.sub("[⁰¹²³⁴⁵⁶⁷⁸⁹⁻]+", lambda found: "^" + found.group().translate(SUPERSCRIPTS), composed)
-    return raised.replace("Å", "angstrom")
+    tight = re.sub(r"\s*(\*\*|\^)\s*", "^", raised)
+    return re.sub(r"\s*([*·/])\s*", lambda sign: sign[1].replace("·", "*"), tight.replace("Å", "angstrom"))
 
 
 def _reason(error: Exception) -> str:
@@ -168,7 +170,7 @@ def _canonical_factors() -> dict[tuple[Fraction, Any], str]:
 
 
 def _canonical(plain: str, factor: Fraction, dimension: Dimension) -> str:
-    return _canonical_factors().get((factor, dimension), plain.replace("·", "*"))
+    return _canonical_factors().get((factor, dimension), plain)
 
 
 def quantity(text: str) -> Quantity:
@@ -218,6 +220,35 @@ def ratio(old: Unit, new: Unit) -> Fraction:
         says = f"{old.text} is {describe(old.dimension)}, {new.text} is {describe(new.dimension)}."
         raise UnitError(says, "Name two units of one dimension.")
     return old.factor / new.factor
+
+
+def convert_text(text: str, new: str) -> str:
+    """Return a quantity in another unit, as text with all its digits: exact where a decimal can be.
+
+    Examples
+    --------
+    >>> convert_text("1 eV/angstrom", "kJ/mol/nm")
+    '964.853321233100184 kJ/mol/nm'
+    """
+    found = QUANTITY.fullmatch(text)
+    if not found:
+        raise UnitError(f'"{text[:60]}" is not a number with a unit.', 'Write it like "0.47 nm".')
+    target = unit(new)
+    value = Fraction(found.group(1)) * ratio(unit(found.group(2)), target)
+    return f"{_decimal(value)} {target.text}".rstrip()
+
+
+LONGEST_DECIMAL = 30
+
+
+def _decimal(value: Fraction) -> str:
+    """Return the exact decimal of a fraction if it is short, else 17 significant digits."""
+    with localcontext() as context:
+        context.prec = LONGEST_DECIMAL
+        exact = Decimal(value.numerator) / Decimal(value.denominator)
+        if Fraction(exact) == value and abs(exact.adjusted()) < LONGEST_DECIMAL // 2:
+            return f"{exact:f}"
+    return f"{float(value):.17g}"
 
 
 def unit_system(energy: str, length: str) -> UnitSystem:

@@ -1,0 +1,5 @@
+"""``python -m slopewell``."""
+
+from .cli import run
+
+run()

@@ -1,0 +1,20 @@
+"""Checks: one question a file, answered by findings."""
+
+from .findings import ERROR, LEVELS, NOTE, WARNING, Check, Finding, worst
+from .potential_facts import PotentialFacts, potential_facts
+from .register import POTENTIAL_CHECKS
+from .runner import run_checks
+
+__all__ = [
+    "ERROR",
+    "LEVELS",
+    "NOTE",
+    "POTENTIAL_CHECKS",
+    "WARNING",
+    "Check",
+    "Finding",
+    "PotentialFacts",
+    "potential_facts",
+    "run_checks",
+    "worst",
+]

@@ -1,0 +1,26 @@
+"""The register of checks, in the order in which they are run and reported."""
+
+from __future__ import annotations
+
+from . import (
+    cutoff_steps,
+    expected_landmarks,
+    finite,
+    first_row_energy,
+    repulsive_core,
+    single_well,
+    smooth_inside,
+)
+from .findings import Check
+from .potential_facts import PotentialFacts
+
+POTENTIAL_CHECKS: tuple[Check[PotentialFacts], ...] = (
+    finite.CHECK,
+    smooth_inside.CHECK,
+    cutoff_steps.CHECK,
+    repulsive_core.CHECK,
+    single_well.CHECK,
+    expected_landmarks.CHECK,
+    first_row_energy.CHECK,
+)
+"""Checks of a potential document."""

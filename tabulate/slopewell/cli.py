@@ -1,0 +1,200 @@
+"""The command line: arguments in, exit status out; nothing is computed here."""
+
+from __future__ import annotations
+
+import argparse
+import json
+import os
+import sys
+from collections.abc import Callable, Iterable, Iterator, Sequence
+from typing import TYPE_CHECKING, Any
+
+if TYPE_CHECKING:
+    from rich.console import Console
+
+    from .problems import UnusableInput
+    from .reports import Report
+
+GOOD, FOUND, UNUSABLE = 0, 1, 2
+"""Exit status: nothing worse than a warning; an error was found; the input can't be used."""
+
+
+def run() -> None:
+    """Run the command line and leave with its exit status."""
+    sys.exit(main(sys.argv[1:]))
+
+
+def main(arguments: Sequence[str]) -> int:
+    """Run a command line and return its exit status."""
+    from .problems import UnusableInput
+
+    try:
+        options = parser().parse_args(arguments)
+    except SystemExit as stop:
+        return int(stop.code or 0)
+    try:
+        status: int = options.command(options)
+        sys.stdout.flush()
+        return status
+    except UnusableInput as error:
+        return _refuse(error)
+    except BrokenPipeError:
+        # The reader went away, as "| head" does: nothing is wrong, and nobody is left to tell.
+        os.dup2(os.open(os.devnull, os.O_WRONLY), sys.stdout.fileno())
+        return GOOD
+    except KeyboardInterrupt:
+        print("stopped", file=sys.stderr)
+        return 130
+
+
+def parser() -> argparse.ArgumentParser:
+    """Return the parser of the command line."""
+    top = argparse.ArgumentParser(
+        prog="slopewell",
+        description="Check interatomic potentials, and write energy and force tables that are proved right.",
+    )
+    top.add_argument("--version", action="version", version=_version())
+    commands = top.add_subparsers(title="commands", metavar="COMMAND", required=True)
+    for name, line, build in COMMANDS:
+        command = commands.add_parser(name, help=line, description=line[0].upper() + line[1:] + ".")
+        build(command)
+    return top
+
+
+def _version() -> str:
+    from . import __version__
+
+    return f"slopewell {__version__}"
+
+
+def _check_options(command: argparse.ArgumentParser) -> None:
+    command.add_argument("files", nargs="+", metavar="FILE", help="potential document")
+    command.add_argument("--json", action="store_true", help="print only the report, as JSON")
+    command.add_argument("--strict", action="store_true", help="let a warning count as an error")
+    command.set_defaults(command=_check)
+
+
+def _check(options: argparse.Namespace) -> int:
+    from .workflow import check
+
+    report = check(options.files, track=_track)
+    _print_report(report, as_json=options.json)
+    return _status(report, strict=options.strict)
+
+
+def _tabulate_options(command: argparse.ArgumentParser) -> None:
+    command.add_argument("document", metavar="DOCUMENT", help="potential document")
+    command.add_argument("--into", metavar="DIR", help="folder of the files (default: beside the document)")
+    command.add_argument(
+        "--accept", metavar="CHECK", action="append", default=[], help="write although this check has an error"
+    )
+    command.add_argument("--strict", action="store_true", help="let a warning count as an error")
+    command.set_defaults(command=_tabulate)
+
+
+def _tabulate(options: argparse.Namespace) -> int:
+    from .workflow import tabulate
+
+    done = tabulate(options.document, into=options.into, accept=options.accept, track=_track)
+    _print_report(done.report, as_json=False)
+    console = _console()
+    console.print()
+    if not done.written:
+        console.print("Nothing was written. Mend the errors, or accept a check by --accept CHECK.", style="bold")
+        return FOUND
+    for path in done.written:
+        console.print(f"wrote {path}", highlight=False, markup=False, soft_wrap=True)
+    return _status(done.report, strict=options.strict, accepted=True)
+
+
+def _forms_options(command: argparse.ArgumentParser) -> None:
+    command.add_argument("name", nargs="?", metavar="NAME", help="show one form, with a block to paste")
+    command.set_defaults(command=_forms)
+
+
+def _forms(options: argparse.Namespace) -> int:
+    from .reports.catalogue import form_lines, list_lines
+
+    for line in form_lines(options.name) if options.name else list_lines():
+        print(line)
+    return GOOD
+
+
+def _units_options(command: argparse.ArgumentParser) -> None:
+    command.add_argument("quantity", metavar="QUANTITY", help='such as "1 eV/angstrom"')
+    command.add_argument("unit", metavar="UNIT", help='such as "kJ/mol/nm"')
+    command.set_defaults(command=_units)
+
+
+def _units(options: argparse.Namespace) -> int:
+    from .units import convert_text
+
+    print(convert_text(options.quantity, options.unit))
+    return GOOD
+
+
+def _schema_options(command: argparse.ArgumentParser) -> None:
+    command.add_argument("name", metavar="NAME", help="potential, layout, table or report")
+    command.set_defaults(command=_schema)
+
+
+def _schema(options: argparse.Namespace) -> int:
+    from .problems import Problem, UnusableInput, nearest
+    from .schemas import NAMES, text
+
+    if options.name not in NAMES:
+        raise UnusableInput([Problem("", f'There is no schema "{options.name}".', nearest(options.name, NAMES))])
+    print(text(options.name), end="")
+    return GOOD
+
+
+COMMANDS: tuple[tuple[str, str, Callable[[argparse.ArgumentParser], None]], ...] = (
+    ("check", "check potential documents: findings and landmarks", _check_options),
+    ("tabulate", "check a document, then write every output that it names", _tabulate_options),
+    ("forms", "list the catalogue of published forms, or show one", _forms_options),
+    ("units", "convert a quantity to another unit", _units_options),
+    ("schema", "print a published schema", _schema_options),
+)
+"""Every command: its name, its line of help, and what adds its options."""
+
+
+def _console(*, to_error: bool = False) -> Console:
+    from rich.console import Console
+
+    stream = sys.stderr if to_error else sys.stdout
+    width = None if stream.isatty() else 100
+    return Console(file=stream, width=width, highlight=False, markup=False, emoji=False)
+
+
+def _print_report(report: Report, *, as_json: bool) -> None:
+    if as_json:
+        json.dump(report.record(), sys.stdout, indent=1, ensure_ascii=False, allow_nan=False)
+        print()
+        return
+    from .reports.terminal import print_report
+
+    print_report(report, _console())
+
+
+def _status(report: Report, *, strict: bool, accepted: bool = False) -> int:
+    verdicts = {subject.verdict for subject in report.subjects}
+    if "unusable" in verdicts:
+        return UNUSABLE
+    if ("fail" in verdicts and not accepted) or (strict and verdicts & {"warn", "fail"}):
+        return FOUND
+    return GOOD
+
+
+def _refuse(error: UnusableInput) -> int:
+    from .reports.report import unusable
+    from .reports.terminal import print_problems
+
+    print_problems(unusable(error, error.file or "slopewell"), _console(to_error=True))
+    return UNUSABLE
+
+
+def _track(items: Iterable[Any], label: str) -> Iterator[Any]:
+    """Show a progress bar on a terminal when work lasts more than a second."""
+    from .reports.progress import track
+
+    return track(items, label, sys.stderr)

@@ -1,0 +1,20 @@
+"""Potential documents: read, validated and understood."""
+
+from .build import read_document, understand
+from .model import ENDS, INTERPOLATIONS, SPACINGS, Document, Expectation, Grid, Interaction, Output
+from .source import Source, read_source
+
+__all__ = [
+    "ENDS",
+    "INTERPOLATIONS",
+    "SPACINGS",
+    "Document",
+    "Expectation",
+    "Grid",
+    "Interaction",
+    "Output",
+    "Source",
+    "read_document",
+    "read_source",
+    "understand",
+]

@@ -1,0 +1,108 @@
+"""A potential document after it was read and understood."""
+
+from __future__ import annotations
+
+from dataclasses import dataclass
+from fractions import Fraction
+
+from ..potential import Potential
+from ..units import UnitSystem
+
+SPACINGS = ("separation", "separation-squared", "inverse", "logarithmic")
+INTERPOLATIONS = ("linear", "cubic-hermite", "cubic-spline", "quintic-hermite")
+ENDS = ("clamped", "natural", "not-a-knot")
+
+
+@dataclass(frozen=True, slots=True)
+class Grid:
+    """The rows an interaction is tabulated on.
+
+    Attributes
+    ----------
+    start, end : Fraction
+        First and last separation in ångström.
+    rows : int or None
+        None where a tolerance decides.
+    spacing, interpolation, ends : str
+        What the rows are even in, how the code reads between them, and a spline's end conditions.
+    tolerance, force_tolerance : Fraction or None
+        Largest error of energy (eV) and force (eV/Å) that reading between rows may make.
+    """
+
+    start: Fraction
+    end: Fraction
+    rows: int | None
+    spacing: str = "separation"
+    interpolation: str = "cubic-hermite"
+    ends: str = "clamped"
+    tolerance: Fraction | None = None
+    force_tolerance: Fraction | None = None
+
+
+@dataclass(frozen=True, slots=True)
+class Expectation:
+    """A landmark that the source states, in the document's units."""
+
+    landmark: str
+    value: float
+    within: float
+    treated: bool
+
+
+@dataclass(frozen=True, slots=True)
+class Interaction:
+    """One pair of species: its potential, its grid, and what its source says."""
+
+    potential: Potential
+    grid: Grid
+    expectations: tuple[Expectation, ...] = ()
+
+
+@dataclass(frozen=True, slots=True)
+class Output:
+    """A file to write.
+
+    Attributes
+    ----------
+    file : str
+        Name, with ``{a}`` and ``{b}`` for the species.
+    layout : str
+        Name of a layout file beside the document; empty for HDF5, CSV and JSON.
+    units : UnitSystem or None
+    """
+
+    file: str
+    layout: str = ""
+    units: UnitSystem | None = None
+
+    def file_for(self, between: tuple[str, str]) -> str:
+        """Return the name of the file of one interaction."""
+        return self.file.replace("{a}", between[0]).replace("{b}", between[1])
+
+
+@dataclass(frozen=True, slots=True)
+class Document:
+    """A potential document.
+
+    Attributes
+    ----------
+    file : str
+        As the user named it.
+    text : str
+    sha256 : str
+        Of the file's bytes.
+    title, source, purpose : str
+    units : UnitSystem
+    interactions : tuple of Interaction
+    outputs : tuple of Output
+    """
+
+    file: str
+    text: str
+    sha256: str
+    title: str
+    source: str
+    purpose: str
+    units: UnitSystem
+    interactions: tuple[Interaction, ...]
+    outputs: tuple[Output, ...]

@@ -1,0 +1,149 @@
+"""Write the outputs of a document: compute each table once per system of units, write it, read it back."""
+
+from __future__ import annotations
+
+import re
+from collections.abc import Callable
+from dataclasses import dataclass, replace
+from functools import partial
+from pathlib import Path
+from typing import Any
+
+import numpy as np
+from numpy.typing import NDArray
+
+from . import __version__
+from .document import Document, Output
+from .files import Layout, format_of, layout, read_layout
+from .problems import Problem, UnusableInput
+from .table import Rows, Table
+from .units import UnitSystem
+from .units.constants import CODATA
+
+Array = NDArray[np.float64]
+
+
+@dataclass(frozen=True, slots=True)
+class Target:
+    """One file to write: which interactions it holds, in which units, and by which functions."""
+
+    path: Path
+    names: tuple[str, ...]
+    units: UnitSystem
+    layout: Layout | None
+    write: Callable[[Table, Path], None]
+    read: Callable[[Path], Table]
+
+
+def targets(document: Document, into: Path) -> list[Target]:
+    """Return the files that a document asks for.
+
+    Raises
+    ------
+    UnusableInput
+        If a layout can't be used, a file is named twice, or there is no output.
+    """
+    if not document.outputs:
+        problem = Problem("output", "The document names no output.", 'Add [[output]] with file = "tables.h5".')
+        raise UnusableInput([problem], document.file)
+    found: list[Target] = []
+    for index, output in enumerate(document.outputs):
+        found += _targets_of(document, output, into)
+        paths = [target.path for target in found]
+        if len(set(paths)) < len(paths):
+            says = f'"{output.file}" is written twice.'
+            raise UnusableInput([Problem(f"output[{index}].file", says, "Choose another name.")], document.file)
+    return found
+
+
+def _targets_of(document: Document, output: Output, into: Path) -> list[Target]:
+    pairs = [interaction.potential for interaction in document.interactions]
+    if output.layout:
+        chosen = read_layout(Path(document.file).parent / output.layout)
+        units = output.units or chosen.units or document.units
+        write, read = partial(layout.write, layout=chosen), partial(layout.read, layout=chosen, units=units)
+        return [
+            Target(into / output.file_for(pair.between), (pair.name,), units, chosen, write, read) for pair in pairs
+        ]
+    units = output.units or document.units
+    known = format_of(Path(output.file))
+    if known.holds_all:
+        names = tuple(pair.name for pair in pairs)
+        file = output.file_for(pairs[0].between)
+        return [Target(into / file, names, units, None, known.write, known.read)]
+    return [
+        Target(into / output.file_for(pair.between), (pair.name,), units, None, known.write, known.read)
+        for pair in pairs
+    ]
+
+
+def unit_systems(found: list[Target]) -> list[UnitSystem]:
+    """Return the systems of units that targets need, each once."""
+    return list(dict.fromkeys(target.units for target in found))
+
+
+def write_target(target: Target, document: Document, rows: dict[str, Rows], report: dict[str, Any]) -> None:
+    """Write one file, read it back, and compare.
+
+    Raises
+    ------
+    UnusableInput
+        If it can't be written, or does not read back as it was.
+    """
+    chosen = tuple(_claimed(rows[name], target.layout) for name in target.names)
+    table = Table(
+        interactions=chosen,
+        units=target.units,
+        title=document.title,
+        source=document.source,
+        purpose=document.purpose,
+        document=document.text,
+        document_sha256=document.sha256,
+        constants=CODATA,
+        writer=f"slopewell {__version__}",
+        report=report,
+    )
+    target.write(table, target.path)
+    compare_written(table, target.read(target.path), target)
+
+
+def _claimed(rows: Rows, chosen: Layout | None) -> Rows:
+    return rows if chosen is None or not chosen.interpolation else replace(rows, interpolation=chosen.interpolation)
+
+
+def compare_written(table: Table, again: Table, target: Target) -> None:
+    """Refuse a file that does not hold the numbers that were written to it."""
+    stored = {rows.name: rows for rows in again.interactions}
+    for rows in table.interactions:
+        other = next(iter(stored.values())) if target.layout else stored.get(rows.name)
+        for name, column in rows.columns().items():
+            found = None if other is None else other.column(name)
+            if found is None and target.layout:
+                continue
+            if found is None or not _same(column, found, target.layout, name):
+                says = f"{name} of {rows.name} does not read back from {target.path} as it was written."
+                raise UnusableInput([Problem("", says, "Is the disk sound? Does the layout give enough digits?")])
+
+
+def _same(written: Array, found: Array, chosen: Layout | None, name: str) -> bool:
+    if written.shape != found.shape:
+        return False
+    if chosen is None:
+        return bool(np.array_equal(written, found))
+    formats = {column.quantity: column.format for column in chosen.columns}
+    relative, absolute = rounding(formats.get(name, formats.get("slope" if name == "force" else name, "")))
+    if name not in formats:
+        relative = max(relative, 1e-2)
+    return bool(np.all(np.abs(found - written) <= relative * np.abs(written) + absolute))
+
+
+def rounding(number_format: str) -> tuple[float, float]:
+    """Return the relative and absolute rounding error of a number format; none for the shortest text."""
+    if not number_format or number_format.endswith("d"):
+        return 0.0, 0.0
+    found = re.fullmatch(r"[+ 0]?\d*(?:\.(\d+))?([eEfFgG])", number_format)
+    assert found is not None
+    digits = int(found[1]) if found[1] else 6
+    if found[2] in "fF":
+        return 1e-15, 0.5000001 * 10.0**-digits
+    return 5.000001 * 10.0 ** -(digits + (found[2] in "eE")) + 1e-16, 0.0

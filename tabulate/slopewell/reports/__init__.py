@@ -1,0 +1,5 @@
+"""Reports: for people in the terminal, for machines as JSON."""
+
+from .report import Report, Subject, landmark_record, potential_landmarks, unusable
+
+__all__ = ["Report", "Subject", "landmark_record", "potential_landmarks", "unusable"]

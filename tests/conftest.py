@@ -10,6 +10,11 @@ from functools import cache
 from pathlib import Path
 
 import pytest
+from hypothesis import settings
+
+# A slow machine is no failure.
+settings.register_profile("slopewell", deadline=None)
+settings.load_profile("slopewell")
 
 REFERENCES = Path(__file__).parent / "references"
 

@@ -9,7 +9,6 @@ import pytest
 from flint import arb
 from hypothesis import given
 from hypothesis import strategies as st
-
 from slopewell.formula import bind, names, parse
 from slopewell.formula.bind import as_ball
 from slopewell.formula.tree import Apply, Constant, Number, Tree

@@ -9,7 +9,6 @@ import numpy as np
 import pytest
 from hypothesis import given
 from hypothesis import strategies as st
-
 from slopewell.formula.pairs import Pair, converted, exact_product, pair
 
 MODERATE = st.floats(1e-40, 1e40) | st.floats(-1e40, -1e-40)

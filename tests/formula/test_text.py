@@ -8,7 +8,6 @@ import pytest
 from flint import arb
 from hypothesis import given
 from hypothesis import strategies as st
-
 from slopewell.formula import bind, parse, write
 from slopewell.formula.tree import Apply, Constant, Name
 

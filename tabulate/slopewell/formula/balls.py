@@ -202,7 +202,9 @@ class _Reading:
                 result = result * x
         if n and x[0].contains(0):
             coefficients = [result[k] for k in range(self.order + 1)]
-            coefficients[0] = x[0] ** n if n % 2 else abs(x[0]) ** n
+            # By the edges, because python-flint gives nan for the power of a ball about zero itself.
+            low, high = (edge**n for edge in (x[0].lower(), x[0].upper()))
+            coefficients[0] = low.union(high).union(arb(0))
             result = arb_series(coefficients)
         return result
 

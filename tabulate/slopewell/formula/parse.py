@@ -5,6 +5,7 @@ from __future__ import annotations
 import ast
 import keyword
 import re
+import sys
 import warnings
 from fractions import Fraction
 
@@ -13,8 +14,11 @@ from .tree import Apply, Choice, Name, Number, Place, Tree, depth, negate
 
 LONGEST = 100_000
 """Characters a formula may have."""
-DEEPEST = 150
+DEEPEST = 200
 """Levels of brackets, and of operations one in the other, a formula may have."""
+# Every reading goes down a tree by recursion, three or four calls a level; Python's usual limit is too near.
+sys.setrecursionlimit(max(sys.getrecursionlimit(), 20 * DEEPEST))
+
 LARGEST_EXPONENT = 1000
 """Size up to which a literal exponent is taken."""
 
@@ -132,16 +136,16 @@ def _refuse_neighbours(text: str) -> None:
 
 
 def _as_python(text: str) -> tuple[str, list[int]]:
-    """Write ``^`` as ``**`` inside one pair of brackets; map each new character to its old place."""
-    characters: list[str] = ["("]
-    origin = [0]
+    """Write ``^`` as ``**`` and every blank as a space; map each new character to its old place."""
+    characters: list[str] = []
+    origin: list[int] = []
     for position, character in enumerate(text):
+        if not characters and character.isspace():
+            continue
         piece = "**" if character == "^" else " " if character.isspace() else character
         characters.append(piece)
         origin.extend([position] * len(piece))
-    characters.append(")")
-    origin.extend([len(text), len(text)])
-    return "".join(characters), origin
+    return "".join(characters), [*origin, len(text)]
 
 
 def _syntax(text: str, python: str, origin: list[int]) -> ast.expr:

@@ -154,7 +154,8 @@ def _syntax(text: str, python: str, origin: list[int]) -> ast.expr:
             warnings.simplefilter("ignore", SyntaxWarning)
             return ast.parse(python, mode="eval").body
     except SyntaxError as error:
-        position = origin[min(max((error.offset or 1) - 1, 0), len(origin) - 1)]
+        # Python gives no place where the text ends too early.
+        position = origin[min((error.offset or len(origin)) - 1, len(origin) - 1)]
         says = "The formula can't be read from here on: an operator, a number, a name or a bracket is missing."
         raise FormulaError(
             text, (position, position + 1), says, "Write every product with *, close every bracket."

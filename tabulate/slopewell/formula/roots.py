@@ -83,13 +83,18 @@ def isolate(enclosure: Enclosure, start: Ball, end: Ball) -> Roots:
                 if root is not None:
                     found.append(root)
                 continue
-            if high - low < smallest or visited > MOST_STRETCHES:
+            if high - low < smallest or visited > MOST_STRETCHES or _nowhere_finite(enclosure, low, high):
                 undecided.append((low, high))
                 continue
             # Off the middle, so that a root at a round number is not an end of both halves.
             middle = (low + (high - low) * arb(0.4921875)).mid()
             pending += [(middle, high), (low, middle)]
         return Roots(_distinct(found), _joined(undecided))
+
+
+def _nowhere_finite(enclosure: Enclosure, low: Ball, high: Ball) -> bool:
+    """Tell a stretch on which a function has no value at all from one with a pole on it."""
+    return not any(enclosure(low + (high - low) * arb(share))[0].is_finite() for share in (0, 0.375, 0.75, 1))
 
 
 def _single(enclosure: Enclosure, low: Ball, high: Ball) -> Ball | None:

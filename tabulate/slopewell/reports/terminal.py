@@ -5,7 +5,6 @@ from __future__ import annotations
 from typing import Any
 
 from rich.console import Console
-from rich.padding import Padding
 from rich.text import Text
 
 from ..checks import Finding
@@ -39,11 +38,11 @@ def print_problem(problem: Problem, console: Console) -> None:
     """Print one problem: place, what is wrong, the faulty text, what to try."""
     line = f" (line {problem.line})" if problem.line else ""
     place = Text(f"{problem.at}{line}: " if problem.at else "", style="bold")
-    console.print(Padding(place + Text(problem.says), (0, 0, 0, 2), expand=False))
+    print_indented(place + Text(problem.says), 2, console)
     if problem.excerpt:
-        console.print(Padding(Text(problem.excerpt, no_wrap=True, overflow="ellipsis"), (0, 0, 0, 6), expand=False))
+        print_indented(Text(problem.excerpt, no_wrap=True, overflow="ellipsis"), 6, console)
     if problem.remedy:
-        console.print(Padding(Text(f"Try: {problem.remedy}", style="dim"), (0, 0, 0, 4), expand=False))
+        print_indented(Text(f"Try: {problem.remedy}", style="dim"), 4, console)
 
 
 def print_subject(subject: Subject, console: Console) -> None:
@@ -53,7 +52,7 @@ def print_subject(subject: Subject, console: Console) -> None:
     head.append(f"  {words}", style=f"bold {colour}")
     console.print(head)
     if subject.title:
-        console.print(Padding(Text(subject.title, style="dim"), (0, 0, 0, 2), expand=False))
+        print_indented(Text(subject.title, style="dim"), 2, console)
     for record in subject.landmarks:
         print_landmarks(record, console)
         for finding in subject.findings:
@@ -69,9 +68,10 @@ def print_subject(subject: Subject, console: Console) -> None:
 
 def print_landmarks(record: dict[str, Any], console: Console) -> None:
     """Print the landmarks of one interaction."""
-    console.print(Padding(Text(record["interaction"], style="bold"), (1, 0, 0, 2), expand=False))
+    console.print()
+    print_indented(Text(record["interaction"], style="bold"), 2, console)
     for label, value in landmark_lines(record):
-        console.print(Padding(Text(f"{label:<{LABEL_WIDTH}}{value}"), (0, 0, 0, 4), expand=False))
+        print_indented(Text(f"{label:<{LABEL_WIDTH}}{value}"), 4, console)
 
 
 def landmark_lines(record: dict[str, Any]) -> list[tuple[str, str]]:
@@ -89,7 +89,12 @@ def landmark_lines(record: dict[str, Any]) -> list[tuple[str, str]]:
     add("zero crossing", record["zero_crossing"], length)
     pull = record["largest_attraction"]
     if pull:
-        lines.append(("largest attraction", f"{pull['force']:.6g} {energy}/{length} at {pull['separation']:.6g} {length}"))
+        lines.append(
+            (
+                "largest attraction",
+                f"{pull['force']:.6g} {energy}/{length} at {pull['separation']:.6g} {length}",
+            )
+        )
     add("harmonic wavenumber", record.get("harmonic_wavenumber"), "cm^-1")
     add("classical amplitude", record.get("classical_amplitude"), length)
     count = record["stationary_points"]
@@ -105,6 +110,13 @@ def print_finding(finding: Finding, console: Console) -> None:
     text.append(finding.check, style="bold")
     if finding.mistake:
         text.append(f" [{finding.mistake}]", style="bold")
-    console.print(Padding(text, (0, 0, 0, 4), expand=False))
-    console.print(Padding(Text(finding.says), (0, 0, 0, 12), expand=False))
-    console.print(Padding(Text(f"Try: {finding.remedy}", style="dim"), (0, 0, 0, 12), expand=False))
+    print_indented(text, 4, console)
+    print_indented(Text(finding.says), 12, console)
+    print_indented(Text(f"Try: {finding.remedy}", style="dim"), 12, console)
+
+
+def print_indented(text: Text, indent: int, console: Console) -> None:
+    """Print a text, wrapped to the console, so many columns to the right; no line ends in blanks."""
+    for line in text.wrap(console, max(console.width - indent, 20)):
+        line.rstrip()
+        console.print(Text(" " * indent) + line, soft_wrap=True)

@@ -8,9 +8,13 @@ from functools import cached_property
 import numpy as np
 from numpy.typing import NDArray
 
+from ..formula.balls import ball, series
 from ..document import Document, Expectation, Grid, Interaction
 from ..potential import Landmarks, Potential, find_landmarks
+from ..table.bounds import ErrorBounds
+from ..table.certificate import Certificate
 from ..table.grid import separations
+from ..table.rowcount import row_count
 from ..units import UnitSystem, unit_system
 from ..units.constants import BOLTZMANN
 
@@ -60,6 +64,33 @@ class PotentialFacts:
         if self.potential.energy_scale is not None:
             return float(self.potential.energy_scale)
         return self.thermal_energy or self.bare.well_depth
+
+    @cached_property
+    def bounds(self) -> ErrorBounds:
+        """Proved error bounds of reading between rows."""
+        return ErrorBounds(self.potential.treated, self.grid)
+
+    @cached_property
+    def rows(self) -> int:
+        """The rows of the grid, stated or chosen by its tolerance."""
+        return row_count(self.bounds, self.grid, self.potential.name)
+
+    @cached_property
+    def certificate(self) -> Certificate:
+        """What is proved about a table on this grid."""
+        grid = self.grid
+        bound = self.bounds.bound(self.rows, grid.spacing, grid.interpolation, grid.ends)
+        first = self.treated.extrema[0] if self.treated.extrema else None
+        repels = self.pushes_at_start and (first is None or first.minimum)
+        return Certificate(
+            self.rows, grid.spacing, grid.interpolation, grid.ends, bound, self.treated, repels and self.treated.proved
+        )
+
+    @cached_property
+    def pushes_at_start(self) -> bool:
+        """Whether the force at the first row is proved to be repulsive."""
+        tree = self.potential.treated.pieces[0].tree
+        return bool(series(tree, ball(self.potential.start), 1)[1] < 0)
 
     def length(self, angstrom: float) -> float:
         """Return a length in the document's unit."""

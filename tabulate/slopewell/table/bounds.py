@@ -7,7 +7,7 @@ from __future__ import annotations
 
 from collections.abc import Callable
 from dataclasses import dataclass
-from math import isfinite
+from math import inf, isfinite
 
 from ..document import Grid
 from ..potential import Curve, Potential
@@ -15,7 +15,7 @@ from .edges import EdgeBound, edge_bounds
 from .profile import Stretch, first_stretches
 from .rules import RULES, SLOPE_IN_ENERGY, SLOPE_IN_FORCE, Rule
 from .spacing import Spacing
-from .spline import NO_SLOPE_ERRORS, SlopeErrors, residual, slope_errors
+from .spline import NO_SLOPE_ERRORS, SlopeErrors, residuals, slope_errors
 
 SHARP = 1.02
 """A bound this close to the size that is certainly reached is not refined further."""
@@ -67,8 +67,8 @@ class Bound:
         return isfinite(self.energy) and isfinite(self.force) and isfinite(self.drift)
 
 
-Size = Callable[[Stretch, Spacing, bool], float]
-"""The bound that a stretch brings (True), or what is certainly reached about its middle (False)."""
+Size = Callable[[Stretch, Spacing], tuple[float, float]]
+"""The bound that a stretch brings, and what is certainly reached about its middle."""
 
 
 class ErrorBounds:
@@ -102,58 +102,74 @@ class ErrorBounds:
             drift = max(drift, edge.drift if rule.drift else 0.0)
         return Bound(energy, energy_at, force, force_at, drift)
 
+    def energy_bound(self, rows: int, spacing: str, rule_name: str, ends: str = "clamped") -> float:
+        """Return the bound of the energy error alone, which a search for a row count asks for often."""
+        rule = RULES[rule_name]
+        grid = Spacing(float(self.grid.start), float(self.grid.end), rows, spacing)
+        slopes = self.slopes(grid, ends) if rule_name == "cubic-spline" else NO_SLOPE_ERRORS
+        energy, _ = self.largest(grid, self.energy_size(rule, slopes, EXACT))
+        for edge in edge_bounds(self.curve, grid, rule, (energy, inf)):
+            energy = max(energy, edge.energy + SLOPE_IN_ENERGY * edge.length * slopes.about(edge.at, edge.at))
+        return energy
+
     def largest(self, grid: Spacing, size: Size) -> tuple[float, float]:
         """Return the largest size over all stretches and where it lies, cutting stretches until it is sharp."""
-        sizes = [size(part, grid, True) for part in self.stretches]
-        reached = max((size(part, grid, False) for part in self.stretches), default=0.0)
+        sizes = [size(part, grid) for part in self.stretches]
+        reached = max((low for _, low in sizes), default=0.0)
         for _ in range(MOST_CUTS):
             top = max(range(len(sizes)), key=sizes.__getitem__)
             part = self.stretches[top]
-            if sizes[top] <= SHARP * reached or part.high - part.low < 1e-4 * part.high:
+            if sizes[top][0] <= SHARP * reached or part.high - part.low < 1e-4 * part.high:
                 break
             halves = part.halves()
             self.stretches[top : top + 1] = halves
-            sizes[top : top + 1] = [size(half, grid, True) for half in halves]
-            reached = max(reached, *(size(half, grid, False) for half in halves))
+            sizes[top : top + 1] = [size(half, grid) for half in halves]
+            reached = max(reached, sizes[top][1], sizes[top + 1][1])
         top = max(range(len(sizes)), key=sizes.__getitem__)
         part = self.stretches[top]
-        return sizes[top], (part.low + part.high) / 2
+        return sizes[top][0], (part.low + part.high) / 2
 
     def energy_size(self, rule: Rule, slopes: SlopeErrors, rounding: Rounding) -> Size:
         """Return the size of the energy error."""
 
-        def size(part: Stretch, grid: Spacing, proved: bool) -> float:
+        def size(part: Stretch, grid: Spacing) -> tuple[float, float]:
             h = grid.longest(part.low, part.high)
-            derivatives = part.largest if proved else part.middle
-            smooth = rule.energy.size(h, derivatives[rule.energy.order])
-            return smooth + SLOPE_IN_ENERGY * h * slopes.about(part.low, part.high) + _energy_rounding(derivatives, part, h, rounding, rule)
+            added = SLOPE_IN_ENERGY * h * slopes.about(part.low, part.high)
+            return tuple(  # type: ignore[return-value]
+                rule.energy.size(h, sizes[rule.energy.order])
+                + added
+                + _energy_rounding(sizes, part, h, rounding, rule)
+                for sizes in (part.largest, part.middle)
+            )
 
         return size
 
     def force_size(self, rule: Rule, slopes: SlopeErrors, rounding: Rounding) -> Size:
         """Return the size of the force error."""
 
-        def size(part: Stretch, grid: Spacing, proved: bool) -> float:
+        def size(part: Stretch, grid: Spacing) -> tuple[float, float]:
             h = grid.longest(part.low, part.high)
-            derivatives = part.largest if proved else part.middle
-            smooth = rule.force.size(h, derivatives[rule.force.order])
-            return smooth + SLOPE_IN_FORCE * slopes.about(part.low, part.high) + _force_rounding(derivatives, part, h, rounding, rule)
+            added = SLOPE_IN_FORCE * slopes.about(part.low, part.high)
+            return tuple(  # type: ignore[return-value]
+                rule.force.size(h, sizes[rule.force.order]) + added + _force_rounding(sizes, part, h, rounding, rule)
+                for sizes in (part.largest, part.middle)
+            )
 
         return size
 
     def drift_size(self, rule: Rule) -> Size:
         """Return the size of the distance between the force read and the slope of the energy read."""
 
-        def size(part: Stretch, grid: Spacing, proved: bool) -> float:
+        def size(part: Stretch, grid: Spacing) -> tuple[float, float]:
             assert rule.drift is not None
-            derivatives = part.largest if proved else part.middle
-            return rule.drift.size(grid.longest(part.low, part.high), derivatives[rule.drift.order])
+            h, order = grid.longest(part.low, part.high), rule.drift.order
+            return rule.drift.size(h, part.largest[order]), rule.drift.size(h, part.middle[order])
 
         return size
 
     def slopes(self, grid: Spacing, ends: str) -> SlopeErrors:
         """Return bounds on the errors of a cubic spline's slopes at its knots."""
-        self.largest(grid, residual)
+        self.largest(grid, residuals)
         return slope_errors(self.curve, grid, ends, self.stretches)
 
 

@@ -16,16 +16,17 @@ from .profile import Stretch
 from .spacing import Spacing
 
 
-def residual(part: Stretch, grid: Spacing, proved: bool) -> float:
-    """Bound the residual at knots of a smooth stretch.
+def residuals(part: Stretch, grid: Spacing) -> tuple[float, float]:
+    """Bound the residual at knots of a smooth stretch, and say what is certainly reached about its middle.
 
     By Taylor's theorem ρ = (λ a³ U⁗ₗ − μ b³ U⁗ᵣ)/24 with means of U⁗ over the intervals a, b on both sides.
     """
-    derivatives = part.largest if proved else part.middle
     h = grid.longest(part.low, part.high)
     h = grid.longest(max(part.low - h, grid.start), min(part.high + h, grid.end))
-    close = h**4 * derivatives[5] + h**2 * grid.unevenness(part.low, part.high) * derivatives[4]
-    return min(close, h**3 * derivatives[4]) / 24
+    uneven = h**2 * grid.unevenness(part.low, part.high)
+    return tuple(  # type: ignore[return-value]
+        min(h**4 * sizes[5] + uneven * sizes[4], h**3 * sizes[4]) / 24 for sizes in (part.largest, part.middle)
+    )
 
 
 def knot_residual(curve: Curve, grid: Spacing, edge: float) -> float:
@@ -65,29 +66,39 @@ class SlopeErrors:
     ----------
     grid : Spacing
     parts : tuple of (low, high, residual)
-        Every stretch with the largest residual at its knots, and every edge and end with its own.
+        Every stretch with the largest residual at its knots, and every edge and end with its own; ascending.
+    largest : float
+        The largest residual.
     """
 
     grid: Spacing
     parts: tuple[tuple[float, float, float], ...]
+    largest: float
 
     def about(self, low: float, high: float) -> float:
         """Return the largest slope error on a stretch.
 
         Its own neighbourhood counts in full; from further than 30 knots less than 2⁻³⁰ arrives.
         """
+        if not self.parts:
+            return 0.0
         start = self.grid.row(floor(self.grid.position(low)) - REACH)
         end = self.grid.row(floor(self.grid.position(high)) + REACH + 1)
-        near = max((size for a, b, size in self.parts if b >= start and a <= end), default=0.0)
-        return near + 2.0**-REACH * max((size for _, _, size in self.parts), default=0.0)
+        near = 0.0
+        for a, b, size in self.parts:
+            if a > end:
+                break
+            if b >= start and size > near:
+                near = size
+        return near + 2.0**-REACH * self.largest
 
 
-NO_SLOPE_ERRORS = SlopeErrors(Spacing(1.0, 2.0, 2, "separation"), ())
+NO_SLOPE_ERRORS = SlopeErrors(Spacing(1.0, 2.0, 2, "separation"), (), 0.0)
 
 
 def slope_errors(curve: Curve, grid: Spacing, ends: str, stretches: list[Stretch]) -> SlopeErrors:
     """Return the slope errors of the spline through the rows of a grid, its stretches being sharp already."""
-    parts = [(part.low, part.high, residual(part, grid, True)) for part in stretches]
+    parts = [(part.low, part.high, residuals(part, grid)[0]) for part in stretches]
     for edge in curve.edges():
         place = float(edge)
         parts.append((place, place, knot_residual(curve, grid, place)))
@@ -95,7 +106,7 @@ def slope_errors(curve: Curve, grid: Spacing, ends: str, stretches: list[Stretch
         for part, at_start in ((stretches[0], True), (stretches[-1], False)):
             r = grid.start if at_start else grid.end
             parts.append((r, r, end_residual(curve, grid, ends, part, at_start)))
-    return SlopeErrors(grid, tuple(parts))
+    return SlopeErrors(grid, tuple(sorted(parts)), max(size for _, _, size in parts))
 
 
 def end_residual(curve: Curve, grid: Spacing, ends: str, part: Stretch, at_start: bool) -> float:
@@ -112,7 +123,7 @@ def end_residual(curve: Curve, grid: Spacing, ends: str, part: Stretch, at_start
     if ends == "natural":
         curvature = 2 * float(abs(series(curve.piece_at(rows[0]).tree, ball(rows[0]), 2)[2]).upper())
         return h / 2 * curvature + h**3 / 24 * fourth
-    return _not_a_knot(h, k, fourth, residual(part, grid, True))
+    return _not_a_knot(h, k, fourth, residuals(part, grid)[0])
 
 
 def _not_a_knot(h: float, k: float, fourth: float, interior: float) -> float:

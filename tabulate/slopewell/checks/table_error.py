@@ -1,0 +1,56 @@
+"""Does reading between the rows keep the document's tolerance?"""
+
+from __future__ import annotations
+
+from collections.abc import Iterator
+
+from ..table.rowcount import rows_needed
+from .findings import ERROR, NOTE, Check, Finding
+from .potential_facts import PotentialFacts
+
+
+def look(facts: PotentialFacts) -> Iterator[Finding]:
+    """Hold the proved error bounds of energy and force against the tolerances of the grid."""
+    grid, bound = facts.grid, facts.certificate.bound
+    if not bound.proved:
+        yield Finding(
+            level=ERROR if grid.tolerance is not None or grid.force_tolerance is not None else NOTE,
+            says="No bound on the error between rows could be proved: some derivative of the curve is not bounded.",
+            remedy="Keep the grid away from where the formula breaks down, or use a rule for rougher curves (linear).",
+        )
+        return
+    errors = (
+        ("energy", bound.energy, bound.energy_at, grid.tolerance, 0),
+        ("force", bound.force, bound.force_at, grid.force_tolerance, 1),
+    )
+    for name, error, at, tolerance, power in errors:
+        if tolerance is None or error <= float(tolerance):
+            continue
+        unit, place = facts.units.per_length(power).text, facts.length(at)
+        yield Finding(
+            level=ERROR,
+            says=f"Reading {facts.rows} rows by {grid.interpolation} makes a {name} error of up to "
+            f"{facts.energy(error, power):.3g} {unit} (proved), near {place:.4g} {facts.units.length.text}; "
+            f"{facts.energy(float(tolerance), power):.3g} {unit} is allowed.",
+            remedy=_remedy(facts),
+            start=place,
+            end=place,
+            measured=facts.energy(error, power),
+            limit=facts.energy(float(tolerance), power),
+            unit=unit,
+        )
+
+
+def _remedy(facts: PotentialFacts) -> str:
+    grid = facts.grid
+    energy = None if grid.tolerance is None else float(grid.tolerance)
+    force = None if grid.force_tolerance is None else float(grid.force_tolerance)
+    rows = rows_needed(facts.bounds, grid.spacing, grid.interpolation, grid.ends, energy, force)
+    if rows is None:
+        return "No row count keeps it by this rule: allow more, or choose another rule."
+    return f"Use rows = {rows}, or leave rows out and let the tolerance choose; slopewell plan compares the rules."
+
+
+CHECK: Check[PotentialFacts] = Check(
+    "table-error", "Reading between rows keeps the stated tolerance", look, requires=("finite",)
+)

@@ -1,0 +1,123 @@
+"""The verb plan: how many rows each spacing and interpolation rule needs for a tolerance."""
+
+from __future__ import annotations
+
+from collections.abc import Callable, Iterable, Iterator
+from dataclasses import dataclass
+from fractions import Fraction
+from pathlib import Path
+from typing import Any
+
+from .document import INTERPOLATIONS, SPACINGS, Document, Grid, Interaction, read_document
+from .problems import Problem, UnusableInput
+from .table.bounds import ErrorBounds
+from .table.rowcount import rows_needed
+from .table.rules import RULES
+from .units import UnitSystem, dimension, quantity
+
+BYTES_A_NUMBER = 8
+
+
+@dataclass(frozen=True, slots=True)
+class Plan:
+    """What one spacing and rule need for one interaction, in the document's units.
+
+    Attributes
+    ----------
+    interaction, spacing, interpolation : str
+    rows : int or None
+        None where no table of up to ten million rows keeps the tolerance.
+    size : int or None
+        Bytes of its numbers in double precision.
+    energy_error_bound, force_error_bound, drift_bound : float or None
+    """
+
+    interaction: str
+    spacing: str
+    interpolation: str
+    rows: int | None
+    size: int | None
+    energy_error_bound: float | None
+    force_error_bound: float | None
+    drift_bound: float | None
+
+    def record(self) -> dict[str, Any]:
+        """Return the plan as JSON data."""
+        return {
+            "interaction": self.interaction,
+            "spacing": self.spacing,
+            "interpolation": self.interpolation,
+            "rows": self.rows,
+            "bytes": self.size,
+            "energy_error_bound": self.energy_error_bound,
+            "force_error_bound": self.force_error_bound,
+            "drift_bound": self.drift_bound,
+            "proved": self.rows is not None,
+        }
+
+
+def plan(
+    path: str | Path,
+    tolerance: str | None = None,
+    *,
+    track: Callable[[Iterable[Any], str], Iterator[Any]] = lambda items, label: iter(items),
+) -> tuple[Document, list[Plan]]:
+    """Plan every interaction of a document with every spacing and rule.
+
+    Parameters
+    ----------
+    path : path
+        The document.
+    tolerance : str, optional
+        Largest energy error, such as ``"1e-6 kJ/mol"``; else that of each grid.
+
+    Raises
+    ------
+    UnusableInput
+        If the document can't be used, or there is no tolerance.
+    """
+    document = read_document(path)
+    stated = None if tolerance is None else _energy(tolerance)
+    plans: list[Plan] = []
+    for interaction in track(document.interactions, "planning"):
+        wanted = stated or interaction.grid.tolerance
+        if wanted is None:
+            says = f"{interaction.potential.name} has no tolerance to plan for."
+            raise UnusableInput([Problem("grid.tolerance", says, 'Give --tolerance "1e-6 kJ/mol", or one in the grid.')])
+        plans += plans_of(interaction, document.units, wanted)
+    return document, plans
+
+
+def _energy(text: str) -> Fraction:
+    found = quantity(text)
+    if found.dimension != dimension("energy") or found.value <= 0:
+        raise UnusableInput([Problem("--tolerance", f'"{text}" is no positive energy.', 'Write it like "1e-6 kJ/mol".')])
+    return found.value
+
+
+def plans_of(interaction: Interaction, units: UnitSystem, tolerance: Fraction) -> Iterator[Plan]:
+    """Yield the plan of each spacing and rule for one interaction."""
+    bounds = ErrorBounds(interaction.potential.treated, interaction.grid)
+    for spacing in SPACINGS:
+        for interpolation in INTERPOLATIONS:
+            yield _plan(interaction.potential.name, interaction.grid, bounds, spacing, interpolation, units, tolerance)
+
+
+def _plan(
+    name: str, grid: Grid, bounds: ErrorBounds, spacing: str, interpolation: str, units: UnitSystem, tolerance: Fraction
+) -> Plan:
+    rows = rows_needed(bounds, spacing, interpolation, grid.ends, float(tolerance), None)
+    if rows is None:
+        return Plan(name, spacing, interpolation, None, None, None, None, None)
+    bound = bounds.bound(rows, spacing, interpolation, grid.ends)
+    energy, force = float(units.energy.factor), float(units.force.factor)
+    return Plan(
+        interaction=name,
+        spacing=spacing,
+        interpolation=interpolation,
+        rows=rows,
+        size=rows * RULES[interpolation].columns * BYTES_A_NUMBER,
+        energy_error_bound=bound.energy / energy,
+        force_error_bound=bound.force / force,
+        drift_bound=bound.drift / force,
+    )

@@ -71,13 +71,14 @@ def _check_options(command: argparse.ArgumentParser) -> None:
     command.add_argument("files", nargs="+", metavar="FILE", help="potential document")
     command.add_argument("--json", action="store_true", help="print only the report, as JSON")
     command.add_argument("--strict", action="store_true", help="let a warning count as an error")
+    command.add_argument("--every-row", action="store_true", help="prove every row, not only a few hundred")
     command.set_defaults(command=_check)
 
 
 def _check(options: argparse.Namespace) -> int:
     from .workflow import check
 
-    report = check(options.files, track=_track)
+    report = check(options.files, every_row=options.every_row, track=_track)
     _print_report(report, as_json=options.json)
     return _status(report, strict=options.strict)
 
@@ -93,7 +94,7 @@ def _tabulate_options(command: argparse.ArgumentParser) -> None:
 
 
 def _tabulate(options: argparse.Namespace) -> int:
-    from .workflow import tabulate
+    from .tabulating import tabulate
 
     done = tabulate(options.document, into=options.into, accept=options.accept, track=_track)
     _print_report(done.report, as_json=False)
@@ -105,6 +106,27 @@ def _tabulate(options: argparse.Namespace) -> int:
     for path in done.written:
         console.print(f"wrote {path}", highlight=False, markup=False, soft_wrap=True)
     return _status(done.report, strict=options.strict, accepted=True)
+
+
+def _plan_options(command: argparse.ArgumentParser) -> None:
+    command.add_argument("document", metavar="DOCUMENT", help="potential document")
+    command.add_argument("--tolerance", metavar="ENERGY", help='such as "1e-6 kJ/mol" (default: that of each grid)')
+    command.add_argument("--json", action="store_true", help="print only the plans, as JSON")
+    command.set_defaults(command=_plan)
+
+
+def _plan(options: argparse.Namespace) -> int:
+    from .planning import plan
+
+    document, plans = plan(options.document, options.tolerance, track=_track)
+    if options.json:
+        _print_json({"plans": [one.record() for one in plans]})
+        return GOOD
+    from .reports.plans import plan_lines
+
+    for line in plan_lines(plans, document.units):
+        print(line)
+    return GOOD
 
 
 def _forms_options(command: argparse.ArgumentParser) -> None:
@@ -133,6 +155,24 @@ def _units(options: argparse.Namespace) -> int:
     return GOOD
 
 
+def _sheet_options(command: argparse.ArgumentParser) -> None:
+    command.add_argument("files", nargs="+", metavar="FILE", help="document or table; a second one is laid over the first")
+    command.add_argument(
+        "-o", "--output", metavar="OUT", help=".html, .png, .svg or .pdf (default: a page beside the first file)"
+    )
+    command.add_argument("--strict", action="store_true", help="let a warning count as an error")
+    command.set_defaults(command=_sheet)
+
+
+def _sheet(options: argparse.Namespace) -> int:
+    from .sheets import sheet
+
+    path, shown = sheet(options.files, options.output, track=_track)
+    print(f"wrote {path}")
+    failing = {"fail", "warn"} if options.strict else {"fail"}
+    return FOUND if shown.record.get("verdict") in failing else GOOD
+
+
 def _schema_options(command: argparse.ArgumentParser) -> None:
     command.add_argument("name", metavar="NAME", help="potential, layout, table or report")
     command.set_defaults(command=_schema)
@@ -151,6 +191,8 @@ def _schema(options: argparse.Namespace) -> int:
 COMMANDS: tuple[tuple[str, str, Callable[[argparse.ArgumentParser], None]], ...] = (
     ("check", "check potential documents: findings and landmarks", _check_options),
     ("tabulate", "check a document, then write every output that it names", _tabulate_options),
+    ("sheet", "write a page or a picture of curves, landmarks and findings", _sheet_options),
+    ("plan", "how many rows each grid and interpolation rule needs", _plan_options),
     ("forms", "list the catalogue of published forms, or show one", _forms_options),
     ("units", "convert a quantity to another unit", _units_options),
     ("schema", "print a published schema", _schema_options),
@@ -166,10 +208,14 @@ def _console(*, to_error: bool = False) -> Console:
     return Console(file=stream, width=width, highlight=False, markup=False, emoji=False)
 
 
+def _print_json(data: Any) -> None:
+    json.dump(data, sys.stdout, indent=1, ensure_ascii=False, allow_nan=False)
+    print()
+
+
 def _print_report(report: Report, *, as_json: bool) -> None:
     if as_json:
-        json.dump(report.record(), sys.stdout, indent=1, ensure_ascii=False, allow_nan=False)
-        print()
+        _print_json(report.record())
         return
     from .reports.terminal import print_report
 

@@ -3,16 +3,14 @@
 from __future__ import annotations
 
 from collections.abc import Callable, Iterable, Iterator
-from dataclasses import dataclass, replace
+from dataclasses import replace
 from pathlib import Path
 from typing import Any
 
-from .checks import ERROR, POTENTIAL_CHECKS, Finding, potential_facts, run_checks
+from .checks import POTENTIAL_CHECKS, Finding, PotentialFacts, potential_facts, run_checks
 from .document import Document, read_document
-from .outputs import targets, unit_systems, write_target
-from .problems import Problem, UnusableInput, nearest
-from .reports import Report, Subject, potential_landmarks, unusable
-from .table import tabulate_rows
+from .problems import UnusableInput
+from .reports import Report, Subject, certificate_record, potential_landmarks, unusable
 
 Track = Callable[[Iterable[Any], str], Iterator[Any]]
 """Something that passes items through and may show how far it is."""
@@ -23,12 +21,14 @@ def silently(items: Iterable[Any], label: str) -> Iterator[Any]:
     return iter(items)
 
 
-def check(paths: Iterable[str | Path], *, track: Track = silently) -> Report:
+def check(paths: Iterable[str | Path], *, every_row: bool = False, track: Track = silently) -> Report:
     """Check potential documents.
 
     Parameters
     ----------
     paths : iterable of path
+    every_row : bool
+        Prove each row of the tables that the documents ask for to be right to its last places.
     track : callable, optional
         Shows progress.
 
@@ -37,96 +37,54 @@ def check(paths: Iterable[str | Path], *, track: Track = silently) -> Report:
     Report
         One subject a file, in order; a file that can't be used has problems instead of findings.
     """
-    return Report(tuple(_check_file(str(path), track) for path in paths))
+    return Report(tuple(_check_file(str(path), every_row, track) for path in paths))
 
 
-def _check_file(file: str, track: Track) -> Subject:
+def _check_file(file: str, every_row: bool, track: Track) -> Subject:
     try:
-        return check_document(read_document(file), track=track)
+        document = read_document(file)
+        subject, facts = check_document(document, track=track)
+        return _prove(subject, facts, track) if every_row else subject
     except UnusableInput as error:
         return unusable(error, file)
 
 
-def check_document(document: Document, *, track: Track = silently) -> Subject:
-    """Run every check of a potential over every interaction of a document."""
+def check_document(document: Document, *, track: Track = silently) -> tuple[Subject, list[PotentialFacts]]:
+    """Run every check of a potential over every interaction of a document.
+
+    Returns
+    -------
+    (Subject, list of PotentialFacts)
+        What was found, and the facts of each interaction it was found from.
+    """
     findings: list[Finding] = []
-    landmarks: list[dict[str, Any]] = []
     ran: dict[str, None] = {}
-    for interaction in track(document.interactions, "checking"):
-        facts = potential_facts(document, interaction)
-        found, names = run_checks(POTENTIAL_CHECKS, facts, interaction.potential.name)
+    every = [potential_facts(document, interaction) for interaction in document.interactions]
+    records: list[tuple[dict[str, Any], dict[str, Any]]] = []
+    for facts in track(every, "checking"):
+        found, names = run_checks(POTENTIAL_CHECKS, facts, facts.potential.name)
         findings += found
         ran |= dict.fromkeys(names)
-        landmarks.append(potential_landmarks(facts))
-    return Subject(
+        certified = facts.certificate.record(document.units) if "table-error" in names else {}
+        records.append((potential_landmarks(facts), certificate_record(facts, certified)))
+    subject = Subject(
         file=document.file,
         sha256=document.sha256,
         findings=tuple(findings),
-        landmarks=tuple(landmarks),
+        landmarks=tuple(landmarks for landmarks, _ in records),
+        certificates=tuple(certificate for _, certificate in records if len(certificate) > 2),
         checked=tuple(ran),
         title=document.title,
     )
+    return subject, every
 
 
-@dataclass(frozen=True, slots=True)
-class Tabulated:
-    """What ``tabulate`` did: what it found, and the files it wrote (none where an error stands)."""
+def _prove(subject: Subject, every: list[PotentialFacts], track: Track) -> Subject:
+    """Prove every row of the tables that a document asks for, in its own units."""
+    from .tabulating import certified_rows
 
-    report: Report
-    written: tuple[Path, ...]
-
-
-def tabulate(
-    path: str | Path,
-    *,
-    into: str | Path | None = None,
-    accept: Iterable[str] = (),
-    track: Track = silently,
-) -> Tabulated:
-    """Check a document, then write every output that it names.
-
-    Parameters
-    ----------
-    path : path
-        The document.
-    into : path, optional
-        Folder of the files; beside the document by default.
-    accept : iterable of str
-        Checks whose errors do not stop the writing; the acceptance is recorded in the files.
-    track : callable, optional
-        Shows progress.
-
-    Raises
-    ------
-    UnusableInput
-        If the document can't be used or a file can't be written.
-    """
-    accepted = _known_checks(accept)
-    document = read_document(path)
-    found = targets(document, Path(path).parent if into is None else Path(into))
-    subject = check_document(document, track=track)
-    errors = {finding.check for finding in subject.findings if finding.level == ERROR}
-    subject = replace(subject, accepted=tuple(name for name in accepted if name in errors))
-    if errors - set(accepted):
-        return Tabulated(Report((subject,)), ())
-    # A stored report names the file without its folder, so that the same document gives the same bytes anywhere.
-    stored = Report((replace(subject, file=Path(document.file).name),)).record()
-    for units in unit_systems(found):
-        rows = {
-            interaction.potential.name: tabulate_rows(
-                interaction.potential, interaction.grid, interaction.grid.rows or 2, units
-            )
-            for interaction in track(document.interactions, f"tabulating in {units.energy.text}")
-        }
-        for target in track([t for t in found if t.units == units], "writing"):
-            write_target(target, document, rows, stored)
-    return Tabulated(Report((subject,)), tuple(target.path for target in found))
-
-
-def _known_checks(names: Iterable[str]) -> tuple[str, ...]:
-    known = [check.name for check in POTENTIAL_CHECKS]
-    chosen = tuple(dict.fromkeys(names))
-    for name in chosen:
-        if name not in known:
-            raise UnusableInput([Problem("--accept", f'There is no check "{name}".', nearest(name, known))])
-    return chosen
+    certificates = []
+    for facts in track(every, "proving every row"):
+        rows = certified_rows(facts, facts.units, every_row=True)
+        certificates.append(certificate_record(facts, rows.certificate))
+    return replace(subject, certificates=tuple(certificates))

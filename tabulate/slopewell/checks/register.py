@@ -10,6 +10,7 @@ from . import (
     repulsive_core,
     single_well,
     smooth_inside,
+    table_error,
 )
 from .findings import Check
 from .potential_facts import PotentialFacts
@@ -22,5 +23,6 @@ POTENTIAL_CHECKS: tuple[Check[PotentialFacts], ...] = (
     single_well.CHECK,
     expected_landmarks.CHECK,
     first_row_energy.CHECK,
+    table_error.CHECK,
 )
 """Checks of a potential document."""

@@ -1,5 +1,5 @@
 """Reports: for people in the terminal, for machines as JSON."""
 
-from .report import Report, Subject, landmark_record, potential_landmarks, unusable
+from .report import Report, Subject, certificate_record, landmark_record, potential_landmarks, unusable
 
-__all__ = ["Report", "Subject", "landmark_record", "potential_landmarks", "unusable"]
+__all__ = ["Report", "Subject", "certificate_record", "landmark_record", "potential_landmarks", "unusable"]

@@ -158,3 +158,9 @@ def potential_landmarks(facts: PotentialFacts) -> dict[str, Any]:
     bare = landmark_record(name, units, facts.bare)
     record["bare"] = {key: value for key, value in bare.items() if key not in ("interaction", "units")}
     return record
+
+
+def certificate_record(facts: PotentialFacts, certificate: dict[str, Any]) -> dict[str, Any]:
+    """Return a certificate as JSON data, with the interaction and the units it is in."""
+    units = {"energy": facts.units.energy.text, "length": facts.units.length.text}
+    return {"interaction": facts.potential.name, "units": units, **certificate}

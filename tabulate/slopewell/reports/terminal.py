@@ -53,8 +53,11 @@ def print_subject(subject: Subject, console: Console) -> None:
     console.print(head)
     if subject.title:
         print_indented(Text(subject.title, style="dim"), 2, console)
+    certificates = {record["interaction"]: record for record in subject.certificates}
     for record in subject.landmarks:
         print_landmarks(record, console)
+        for label, value in certificate_lines(certificates.get(record["interaction"], {})):
+            print_indented(Text(f"{label:<{LABEL_WIDTH}}{value}"), 4, console)
         for finding in subject.findings:
             if finding.interaction == record["interaction"]:
                 print_finding(finding, console)
@@ -102,6 +105,30 @@ def landmark_lines(record: dict[str, Any]) -> list[tuple[str, str]]:
         certainty = "proved" if record["proved"] else "not proved"
         lines.append(("stationary points", f"{count} ({certainty})"))
     return lines
+
+
+def certificate_lines(record: dict[str, Any]) -> list[tuple[str, str]]:
+    """Return what is proved about the rows of one interaction as labels and values."""
+    if "rows" not in record:
+        return []
+    length, energy = record["units"]["length"], record["units"]["energy"]
+    lines = [("table", f"{record['rows']} rows even in {EVEN_IN[record['spacing']]}, read by {record['interpolation']}")]
+    if record["proved"]:
+        lines.append(
+            ("energy error at most", f"{record['energy_error_bound']:.3g} {energy} near {record['energy_error_at']:.4g} {length}")
+        )
+        lines.append(
+            (
+                "force error at most",
+                f"{record['force_error_bound']:.3g} {energy}/{length} near {record['force_error_at']:.4g} {length}",
+            )
+        )
+    if "last_places_off" in record:
+        lines.append(("rows proved", f"{record['rows_proved']}, none more than {record['last_places_off']:g} last places off"))
+    return lines
+
+
+EVEN_IN = {"separation": "r", "separation-squared": "r²", "inverse": "1/r", "logarithmic": "log r"}
 
 
 def print_finding(finding: Finding, console: Console) -> None:

@@ -83,7 +83,8 @@ def isolate(enclosure: Enclosure, start: Ball, end: Ball) -> Roots:
                 if root is not None:
                     found.append(root)
                 continue
-            if high - low < smallest or visited > MOST_STRETCHES or _nowhere_finite(enclosure, low, high):
+            hopeless = value.is_zero() or (not value.is_finite() and _nowhere_finite(enclosure, low, high))
+            if high - low < smallest or visited > MOST_STRETCHES or hopeless:
                 undecided.append((low, high))
                 continue
             # Off the middle, so that a root at a round number is not an end of both halves.

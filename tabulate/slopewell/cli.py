@@ -173,6 +173,24 @@ def _sheet(options: argparse.Namespace) -> int:
     return FOUND if shown.record.get("verdict") in failing else GOOD
 
 
+def _sheet_options(command: argparse.ArgumentParser) -> None:
+    command.add_argument("files", nargs="+", metavar="FILE", help="document or table; a second one is laid over the first")
+    command.add_argument(
+        "-o", "--output", metavar="OUT", help=".html, .png, .svg or .pdf (default: a page beside the first file)"
+    )
+    command.add_argument("--strict", action="store_true", help="let a warning count as an error")
+    command.set_defaults(command=_sheet)
+
+
+def _sheet(options: argparse.Namespace) -> int:
+    from .sheets import sheet
+
+    path, shown = sheet(options.files, options.output, track=_track)
+    print(f"wrote {path}")
+    failing = {"fail", "warn"} if options.strict else {"fail"}
+    return FOUND if shown.record.get("verdict") in failing else GOOD
+
+
 def _schema_options(command: argparse.ArgumentParser) -> None:
     command.add_argument("name", metavar="NAME", help="potential, layout, table or report")
     command.set_defaults(command=_schema)
@@ -193,6 +211,7 @@ COMMANDS: tuple[tuple[str, str, Callable[[argparse.ArgumentParser], None]], ...]
     ("tabulate", "check a document, then write every output that it names", _tabulate_options),
     ("sheet", "write a page or a picture of curves, landmarks and findings", _sheet_options),
     ("plan", "how many rows each grid and interpolation rule needs", _plan_options),
+    ("sheet", "write a page or a picture of curves, landmarks and findings", _sheet_options),
     ("forms", "list the catalogue of published forms, or show one", _forms_options),
     ("units", "convert a quantity to another unit", _units_options),
     ("schema", "print a published schema", _schema_options),

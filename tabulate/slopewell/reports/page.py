@@ -1,0 +1,201 @@
+"""One page about a document or its tables: a single HTML file that asks nothing of any other place."""
+
+from __future__ import annotations
+
+import json
+from base64 import b64encode
+from collections.abc import Mapping, Sequence
+from dataclasses import dataclass, field
+from html import escape
+from importlib.resources import files
+from string import Template
+from typing import Any
+
+import numpy as np
+
+from .. import __version__
+from ..units import UnitSystem, ratio, unit_system
+from .article import article
+from .drawing import Drawing
+from .markup import Markup, join, tag
+from .matrix import matrix
+from .verdicts import VERDICTS, mark_of, plural
+from .view import unit_text
+
+COMMON_UNITS = (("eV", "angstrom"), ("kJ/mol", "nm"), ("kcal/mol", "angstrom"), ("hartree", "bohr"))
+POWERS = ((1, 0), (0, 1), (1, -1), (1, -2))
+"""Powers of energy and length of every quantity that the page shows in several units."""
+CAUTION = (
+    "A table that passes says nothing about whether the potential suits the material. The checks hold "
+    "numbers against the formula and the limits stated here; they do not know what the simulation is for. "
+    "Where a result bears on safety, health or a building, the local codes and the judgement of a licensed "
+    "practitioner come first."
+)
+
+
+@dataclass(frozen=True, slots=True)
+class Sheet:
+    """What a page or a picture shows.
+
+    Attributes
+    ----------
+    title, source : str
+    drawings : tuple of Drawing
+    record : mapping
+        The subject's record in the report.
+    facts : tuple of (str, str)
+        Where it comes from: labels and values.
+    document : str
+        The document's text.
+    """
+
+    title: str
+    source: str
+    drawings: tuple[Drawing, ...]
+    record: Mapping[str, Any] = field(default_factory=dict)
+    facts: tuple[tuple[str, str], ...] = ()
+    document: str = ""
+
+
+def page(sheet: Sheet) -> str:
+    """Return a page as the text of one HTML file."""
+    systems = unit_systems_of(sheet.drawings)
+    return Template(_part("page_template.html")).substitute(
+        title=escape(sheet.title),
+        style=_part("page_template.css"),
+        script=_part("page_template.js"),
+        header=_header(sheet, systems),
+        index=matrix(sheet.drawings) if len(sheet.drawings) > 1 else "",
+        articles="\n".join(
+            article(drawing, number, systems) for number, drawing in enumerate(sheet.drawings)
+        ),
+        provenance=_provenance(sheet),
+        caution=escape(CAUTION),
+        writer=escape(f"slopewell {__version__}"),
+        numbers=_numbers(sheet.drawings, systems),
+    )
+
+
+def _part(name: str) -> str:
+    return files(__package__).joinpath(name).read_text(encoding="utf-8")
+
+
+def unit_systems_of(drawings: Sequence[Drawing]) -> list[UnitSystem]:
+    """Return the systems of units of a page: the drawings' own first, then the common ones."""
+    common = [unit_system(energy, length) for energy, length in COMMON_UNITS]
+    own = [drawings[0].units] if drawings else []
+    return own + [system for system in common if system not in own]
+
+
+def _header(sheet: Sheet, systems: Sequence[UnitSystem]) -> Markup:
+    verdict = str(sheet.record.get("verdict", ""))
+    findings = sheet.record.get("findings", [])
+    counts = [
+        plural(sum(finding["level"] == level for finding in findings), level)
+        for level in ("error", "warning", "note")
+    ]
+    checked = len(sheet.record.get("checked", ()))
+    looked = (
+        f"{plural(checked, 'check')} over {plural(len(sheet.drawings), 'interaction')}" if checked else ""
+    )
+    words = VERDICTS[verdict].words if verdict in VERDICTS else "Not checked"
+    options = [
+        tag("option", f"{unit_text(system.energy.text)} and {unit_text(system.length.text)}", value=index)
+        for index, system in enumerate(systems)
+    ]
+    return join(
+        [
+            tag("h1", sheet.title),
+            tag("p", "Source: ", sheet.source, class_="source") if sheet.source else Markup(""),
+            tag(
+                "div",
+                tag("p", mark_of(verdict), " ", words, class_="words"),
+                tag("p", "; ".join(part for part in (looked, ", ".join(counts) if checked else "") if part)),
+                _worst_first(sheet),
+                class_=f"verdict {verdict or 'none'}",
+            ),
+            tag(
+                "p",
+                tag("label", "Units ", for_="units"),
+                tag("select", *options, id_="units"),
+                class_="choose",
+            ),
+        ]
+    )
+
+
+MOST_LISTED = 8
+
+
+def _worst_first(sheet: Sheet) -> Markup:
+    """Return the errors and warnings as links to where they are explained."""
+    listed = [
+        (
+            str(flag.finding["level"]),
+            f"{drawing.name}: {flag.finding['check']}",
+            f"#pair-{place}-finding-{number}",
+        )
+        for place, drawing in enumerate(sheet.drawings)
+        for number, flag in enumerate(drawing.flags, 1)
+        if flag.finding["level"] != "note"
+    ]
+    listed = list({entry[:2]: entry for entry in reversed(listed)}.values())[::-1]
+    listed.sort(key=lambda entry: entry[0] != "error")
+    items = [
+        tag("li", tag("a", tag("b", level), f" {words}", href=target))
+        for level, words, target in listed[:MOST_LISTED]
+    ]
+    if len(listed) > MOST_LISTED:
+        items.append(tag("li", f"and {len(listed) - MOST_LISTED} more below"))
+    return tag("ul", *items) if items else Markup("")
+
+
+def _provenance(sheet: Sheet) -> Markup:
+    facts = [join([tag("dt", label), tag("dd", value)]) for label, value in sheet.facts if value]
+    text = (
+        tag("details", tag("summary", "The document"), tag("pre", tag("code", sheet.document), tabindex=0))
+        if sheet.document
+        else Markup("")
+    )
+    return join([tag("dl", *facts), text])
+
+
+def _numbers(drawings: Sequence[Drawing], systems: Sequence[UnitSystem]) -> str:
+    """Return what the script needs: factors of the units, and the rows that can be read out."""
+    own = systems[0] if systems else None
+    data = {
+        "systems": [_system(system, own) for system in systems if own is not None],
+        "drawings": [_rows(drawing) for drawing in drawings],
+    }
+    return json.dumps(data, ensure_ascii=False, separators=(",", ":"), allow_nan=False).replace(
+        "<", "\\u003c"
+    )
+
+
+def _system(system: UnitSystem, own: UnitSystem) -> dict[str, Any]:
+    factors, units = {}, {}
+    for energy, length in POWERS:
+        key = f"{energy},{length}"
+        ours, theirs = ((each.per_length(-length) if energy else each.length) for each in (own, system))
+        factors[key] = float(ratio(ours, theirs))
+        units[key] = unit_text(theirs.text)
+    return {"factors": factors, "units": units}
+
+
+def _rows(drawing: Drawing) -> dict[str, Any]:
+    low, high = drawing.view.separation
+    inside = (drawing.separation >= low) & (drawing.separation <= high)
+    columns = {"separation": drawing.separation, "energy": drawing.energy, "force": drawing.force}
+    if drawing.other is not None:
+        columns |= {"otherEnergy": drawing.other.energy, "otherForce": drawing.other.force}
+    packed = {name: _packed(column[inside]) for name, column in columns.items() if column is not None}
+    return {
+        "name": drawing.name,
+        "limits": [low, high],
+        "other": drawing.other and drawing.other.label,
+        **packed,
+    }
+
+
+def _packed(column: Any) -> str:
+    return b64encode(np.ascontiguousarray(column, dtype="<f8").tobytes()).decode("ascii")

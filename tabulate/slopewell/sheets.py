@@ -1,0 +1,153 @@
+"""The verb ``sheet``: a page or a picture of a document, a table, or two of them over each other."""
+
+from __future__ import annotations
+
+from collections.abc import Callable, Sequence
+from dataclasses import replace
+from pathlib import Path
+
+from .document import Document, read_document
+from .files import format_of
+from .files.atomic import write_text
+from .problems import Problem, UnusableInput
+from .reports.drawing import document_drawings, overlaid, table_drawings
+from .reports.page import Sheet, page
+from .table import Table
+from .workflow import Track, check_document, silently
+
+PICTURES = (".png", ".svg", ".pdf")
+ENDINGS = (".html", *PICTURES)
+
+
+def sheet(
+    paths: Sequence[str | Path],
+    out: str | Path | None = None,
+    *,
+    read: Callable[[Path], Table] | None = None,
+    track: Track = silently,
+) -> tuple[Path, Sheet]:
+    """Write a page or a picture of one file, or of two over each other.
+
+    Parameters
+    ----------
+    paths : sequence of path
+        One or two documents or tables; of two the second is laid over the first.
+    out : path, optional
+        Ends in .html, .png, .svg or .pdf; by default a page beside the first file.
+    read : callable, optional
+        Reads tables that slopewell did not write.
+    track : callable, optional
+        Shows progress.
+
+    Returns
+    -------
+    (Path, Sheet)
+        The file that was written, and what it shows.
+
+    Raises
+    ------
+    UnusableInput
+        If a file can't be used, two files share no interaction, or the page can't be written.
+    """
+    files = [Path(path) for path in paths]
+    if len(files) > 2:
+        raise UnusableInput(
+            [Problem("", "A sheet shows one file, or two of them over each other.", "Name at most two.")]
+        )
+    target = Path(out) if out is not None else _beside(files)
+    if target.suffix.lower() not in ENDINGS:
+        says = f'The ending of "{target.name}" names neither a page nor a picture.'
+        raise UnusableInput([Problem("--output", says, f"End it in {', '.join(ENDINGS)}.")], str(target))
+    sheets = [sheet_of(path, read=read, track=track) for path in files]
+    shown = sheets[0] if len(sheets) == 1 else compared(sheets[0], sheets[1])
+    if target.suffix.lower() == ".html":
+        write_text(target, page(shown))
+    else:
+        from .reports.picture import write_picture
+
+        write_picture(shown.title, shown.drawings, target)
+    return target, shown
+
+
+def _beside(files: list[Path]) -> Path:
+    name = files[0].stem if len(files) == 1 else f"{files[0].stem}-and-{files[1].stem}"
+    return files[0].parent / f"{name}.html"
+
+
+def sheet_of(path: Path, *, read: Callable[[Path], Table] | None = None, track: Track = silently) -> Sheet:
+    """Return what there is to show of a document or a table."""
+    if read is None and is_document(path):
+        return document_sheet(read_document(path), track=track)
+    try:
+        table = (read or format_of(path).read)(path)
+    except OSError as error:
+        says = f"The file can't be read: {error.strerror or error}."
+        raise UnusableInput([Problem("", says, "Check its name and permissions.")], str(path)) from None
+    return table_sheet(table, path.name)
+
+
+def is_document(path: Path) -> bool:
+    """Tell whether a file is a potential document, by its ending and, in JSON, by what stands in it."""
+    if path.suffix.lower() != ".json":
+        return path.suffix.lower() == ".toml"
+    try:
+        with path.open(encoding="utf-8", errors="replace") as file:
+            return "slopewell/potential/" in file.read(4000)
+    except OSError:
+        return True
+
+
+def document_sheet(document: Document, *, track: Track = silently) -> Sheet:
+    """Return what there is to show of a document."""
+    subject, _ = check_document(document, track=track)
+    record = subject.record()
+    facts = (
+        ("File", Path(document.file).name),
+        ("SHA-256 of the file", document.sha256),
+        ("Purpose", document.purpose.replace("-", " ")),
+        ("Physical constants", "CODATA 2022"),
+        ("Checks that ran", ", ".join(subject.checked)),
+    )
+    return Sheet(
+        document.title, document.source, document_drawings(document, record), record, facts, document.text
+    )
+
+
+def table_sheet(table: Table, file: str) -> Sheet:
+    """Return what there is to show of a table."""
+    subjects = table.report.get("subjects") or [{}]
+    record = subjects[0]
+    facts = (
+        ("File", file),
+        ("SHA-256 of the document", table.document_sha256),
+        ("Purpose", table.purpose.replace("-", " ")),
+        ("Physical constants", table.constants),
+        ("Table written by", table.writer),
+        ("Changed since", "; ".join(table.history)),
+        ("Checks that ran", ", ".join(record.get("checked", ()))),
+    )
+    return Sheet(
+        table.title or file, table.source, table_drawings(table, record), record, facts, table.document
+    )
+
+
+def compared(first: Sheet, second: Sheet) -> Sheet:
+    """Return the first sheet with the second one's curves over it, for the interactions of both."""
+    others = {drawing.name: drawing for drawing in second.drawings}
+    others |= {
+        "-".join(reversed(drawing.between)): drawing for drawing in second.drawings if drawing.between[1]
+    }
+    pairs = [(drawing, others[drawing.name]) for drawing in first.drawings if drawing.name in others]
+    if not pairs and len(first.drawings) == len(second.drawings) == 1:
+        pairs = [(first.drawings[0], second.drawings[0])]
+    if not pairs:
+        says = "The two files have no interaction in common."
+        raise UnusableInput([Problem("", says, "Compare files about the same species.")])
+    files = dict(first.facts)["File"], dict(second.facts)["File"]
+    labels = files if first.title == second.title else (first.title, second.title)
+    return replace(
+        first,
+        title=f"{first.title}, compared with {labels[1]}",
+        drawings=tuple(overlaid(drawing, other, labels) for drawing, other in pairs),
+        facts=(*first.facts, ("Compared with", f"{files[1]} ({second.title})")),
+    )

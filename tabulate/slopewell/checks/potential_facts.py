@@ -44,7 +44,8 @@ class PotentialFacts:
         """Landmarks of the curve that the source states."""
         if self.potential.cutoff is None:
             return self.treated
-        return find_landmarks(self.potential.bare, self.potential.start, self.potential.end)
+        cuts = self.potential.treated.edges()
+        return find_landmarks(self.potential.bare, self.potential.start, self.potential.end, cuts)
 
     @cached_property
     def probes(self) -> Array:

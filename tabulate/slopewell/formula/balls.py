@@ -10,6 +10,7 @@ from __future__ import annotations
 from collections.abc import Callable, Iterator
 from contextlib import contextmanager
 from fractions import Fraction
+from functools import lru_cache
 from math import comb, factorial
 from typing import Any
 
@@ -41,10 +42,13 @@ def precision(bits: int = PRECISION) -> Iterator[None]:
 
 def ball(value: Fraction | float | int) -> Ball:
     """Return the ball of a number: exact for a float, within 2**-128 for a fraction."""
-    if isinstance(value, Fraction):
-        with precision():
-            return arb(fmpq(value.numerator, value.denominator))
-    return arb(value)
+    return _exact(value.numerator, value.denominator) if isinstance(value, Fraction) else arb(value)
+
+
+@lru_cache(maxsize=4096)
+def _exact(numerator: int, denominator: int) -> Ball:
+    with precision():
+        return arb(fmpq(numerator, denominator))
 
 
 def stretch(start: Ball | float | Fraction, end: Ball | float | Fraction) -> Ball:

@@ -10,6 +10,7 @@ from __future__ import annotations
 from collections.abc import Callable
 from dataclasses import dataclass
 from fractions import Fraction
+from typing import Any
 
 from flint import arb
 
@@ -24,6 +25,8 @@ CONTACT = 1e-22
 
 Enclosure = Callable[[Ball], tuple[Ball, Ball]]
 """From a stretch to enclosures of a function and of its derivative over it."""
+Enclosures = Callable[[Ball], list[Ball]]
+"""From a stretch to enclosures of the Taylor coefficients over it."""
 
 
 @dataclass(frozen=True, slots=True)
@@ -47,21 +50,39 @@ class Roots:
         return not self.undecided
 
 
-def roots(tree: Tree, start: Fraction, end: Fraction, derivative: int) -> Roots:
+def roots(
+    tree: Tree, start: Fraction, end: Fraction, derivative: int, enclosures: Enclosures | None = None
+) -> Roots:
     """Find the roots of the k-th derivative of a tree strictly between two separations.
 
     A zero at an end (a potential that leaves smoothly at its cutoff) is divided out first.
+    ``enclosures`` are those of the tree, up to one order more at least, where several of its
+    derivatives are asked for.
     """
     contact = _contact(tree, end, derivative)
+    coefficients_of = enclosures or remembering(tree, derivative + 1)
 
     def enclosure(x: Ball) -> tuple[Ball, Ball]:
-        coefficients = enclose(tree, x, derivative + 1)
+        coefficients = coefficients_of(x)
         return coefficients[derivative], (derivative + 1) * coefficients[derivative + 1]
 
     if contact == 0:
         return isolate(enclosure, ball(start), ball(end))
     clear = _clear_of_end(tree, start, end, derivative, contact)
     return isolate(enclosure, ball(start), ball(clear)) if clear > start else Roots((), ())
+
+
+def remembering(tree: Tree, order: int) -> Enclosures:
+    """Return the enclosures of a tree's Taylor coefficients, each stretch computed once."""
+    known: dict[tuple[Any, ...], list[Ball]] = {}
+
+    def coefficients(x: Ball) -> list[Ball]:
+        key = (*x.mid().man_exp(), *x.rad().man_exp())
+        if key not in known:
+            known[key] = enclose(tree, x, order)
+        return known[key]
+
+    return coefficients
 
 
 def isolate(enclosure: Enclosure, start: Ball, end: Ball) -> Roots:

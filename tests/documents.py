@@ -3,10 +3,13 @@
 from __future__ import annotations
 
 from fractions import Fraction
+from pathlib import Path
 
+from slopewell.document import Document, read_document
 from slopewell.formula import bind, parse
 from slopewell.formula.branches import resolve
 from slopewell.potential import Curve
+from slopewell.problems import UnusableInput
 
 HEAD = """schema = "slopewell/potential/1"
 title = "Argon-like pair for tests"
@@ -52,3 +55,19 @@ def curve(formula: str, start: float | Fraction, end: float | Fraction, **values
 
 REDUCED_LENNARD_JONES = "4*((1/r)^12 - (1/r)^6)"
 """Lennard-Jones with epsilon = 1 eV and sigma = 1 Å."""
+
+
+def read(document: str, folder: Path) -> Document:
+    """Read the text of a document from a file in a folder."""
+    path = folder / "pair.toml"
+    path.write_text(document, encoding="utf-8")
+    return read_document(path)
+
+
+def problems(document: str, folder: Path) -> list[tuple[str, str]]:
+    """Place and words of everything that is wrong with a document; empty if it can be used."""
+    try:
+        read(document, folder)
+    except UnusableInput as error:
+        return [(problem.at, problem.says) for problem in error.problems]
+    return []

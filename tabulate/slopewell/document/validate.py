@@ -50,23 +50,30 @@ def _explain(error: Any, line: Callable[[str], int | None]) -> list[Problem]:
             known = error.schema.get("properties", {})
             unknown = [key for key in error.instance if key not in known]
             return [
-                _problem(line, f"{path}.{key}" if path else key, f'There is no key "{key}" here.', nearest(key, known))
+                _problem(
+                    line,
+                    f"{path}.{key}" if path else key,
+                    f'There is no key "{key}" here.',
+                    nearest(key, known),
+                )
                 for key in unknown
             ]
         case "anyOf" | "oneOf":
             return [_alternatives(error, path, line)]
         case "if" | "then" | "else":
             return [problem for inner in error.context for problem in _explain(inner, line)]
-        case None:
+        case "not":
             says = f'"{error.absolute_path[-1]}" has no meaning here.'
-            return [_problem(line, path, says, "It belongs to treatment = \"switch\"; take it out.")]
+            return [_problem(line, path, says, 'It belongs to treatment = "switch"; take it out.')]
         case _:
             return [_problem(line, path, *_in_words(error))]
 
 
 def _missing(path: str, key: str, line: Callable[[str], int | None]) -> Problem:
     where = path or "the document"
-    return _problem(line, f"{path}.{key}" if path else key, f'The key "{key}" is missing in {where}.', f"Add {key} = …")
+    return _problem(
+        line, f"{path}.{key}" if path else key, f'The key "{key}" is missing in {where}.', f"Add {key} = …"
+    )
 
 
 def _alternatives(error: Any, path: str, line: Callable[[str], int | None]) -> Problem:
@@ -74,11 +81,19 @@ def _alternatives(error: Any, path: str, line: Callable[[str], int | None]) -> P
     given = [key for key in keys if key in error.instance]
     listing = " or ".join(f'"{key}"' for key in keys)
     if given:
-        return _problem(line, f"{path}.{given[-1]}", f"Only one of {listing} may be given.", f"Take out {given[-1]}.")
+        return _problem(
+            line, f"{path}.{given[-1]}", f"Only one of {listing} may be given.", f"Take out {given[-1]}."
+        )
     return _problem(line, path, f"One of {listing} is missing.", f"Add {keys[0]} = …")
 
 
-TYPES = {"object": "a table of keys", "array": "a list", "string": "a text", "number": "a number", "integer": "a whole number"}
+TYPES = {
+    "object": "a table of keys",
+    "array": "a list",
+    "string": "a text",
+    "number": "a number",
+    "integer": "a whole number",
+}
 
 
 def _in_words(error: Any) -> tuple[str, str]:
@@ -88,7 +103,9 @@ def _in_words(error: Any) -> tuple[str, str]:
     rule = error.validator_value
     match error.validator:
         case "type":
-            wanted = " or ".join(TYPES.get(kind, kind) for kind in ([rule] if isinstance(rule, str) else rule))
+            wanted = " or ".join(
+                TYPES.get(kind, kind) for kind in ([rule] if isinstance(rule, str) else rule)
+            )
             return f"Expected {wanted}, found {shown}.", f"Give {wanted}."
         case "enum":
             names = [str(item) for item in rule]

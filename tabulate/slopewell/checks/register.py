@@ -7,6 +7,7 @@ from . import (
     expected_landmarks,
     finite,
     first_row_energy,
+    force_matches_slope,
     repulsive_core,
     single_well,
     smooth_inside,
@@ -17,6 +18,7 @@ from .potential_facts import PotentialFacts
 
 POTENTIAL_CHECKS: tuple[Check[PotentialFacts], ...] = (
     finite.CHECK,
+    force_matches_slope.POTENTIAL_CHECK,
     smooth_inside.CHECK,
     cutoff_steps.CHECK,
     repulsive_core.CHECK,

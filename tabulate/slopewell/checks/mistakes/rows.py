@@ -1,0 +1,136 @@
+"""Mistakes of rows: forces that belong to other rows, and single corrupted rows."""
+
+from __future__ import annotations
+
+from collections.abc import Iterator
+
+import numpy as np
+from numpy.typing import NDArray
+
+from .evidence import Evidence, Explanation, distance
+
+Array = NDArray[np.float64]
+
+FARTHEST = 64
+"""Largest offset looked for, in rows."""
+MOST_CORRUPTED = 0.05
+"""Largest part of the rows that counts as single ones among good ones."""
+
+
+def offset(evidence: Evidence) -> Iterator[Explanation]:
+    """Shift the expected forces by whole and half rows, and keep what fits best."""
+    if not evidence.rows:
+        return
+    scored = []
+    farthest = min(FARTHEST, evidence.force.size // 4)
+    columns = _Halves(evidence)
+    for twice in range(-2 * farthest, 2 * farthest + 1):
+        if twice:
+            score = columns.score(twice)
+            if score is not None:
+                scored.append((score, abs(twice), twice))
+    for _, _, twice in sorted(scored)[:2]:
+        for predicted, band in columns.predictions(twice):
+            rows = twice / 2
+            number = int(rows) if rows == int(rows) else rows
+            where = f"{abs(rows):g} row{'' if abs(rows) <= 1 else 's'} further {'down' if rows > 0 else 'up'}"
+            yield Explanation(
+                predicted,
+                band,
+                f"The force in each row belongs to the separation {where}.",
+                "Shift the force column back"
+                + (
+                    "."
+                    if rows == int(rows)
+                    else "; half a row is what a difference of neighbouring energies gives."
+                ),
+                measured=rows,
+                details={"rows": number},
+                weight=0.2 * (abs(rows) > 4),
+            )
+
+
+class _Halves:
+    """Expected forces at rows and half-way between them."""
+
+    def __init__(self, evidence: Evidence) -> None:
+        self.evidence = evidence
+        r, x = evidence.separation, evidence.expected
+        band = evidence.band
+        wide = np.maximum(band[:-1], band[1:])
+        between = (x[:-1] + x[1:]) / 2
+        self.middles = [(between, wide)]
+        if x.size >= 4:
+            # The middle of a cubic through four rows; how far it leaves the straight line bounds its own error.
+            inner = (9 * (x[1:-2] + x[2:-1]) - x[:-3] - x[3:]) / 16
+            moved = np.full(between.size, np.inf)
+            moved[1:-1] = np.abs(inner - between[1:-1]) / 4
+            between = between.copy()
+            between[1:-1] = inner
+            around = np.maximum(
+                wide, np.maximum(np.append(wide[1:], np.inf), np.insert(wide[:-1], 0, np.inf))
+            )
+            self.middles = [(between, around * 1.25 + moved)]
+        with np.errstate(all="ignore"):
+            quotient = -np.diff(evidence.energy) / np.diff(r)
+            slack = np.abs(quotient) * 1e-9 + (evidence.rounding[:-1] + evidence.rounding[1:]) * 2
+        self.middles.append((quotient, slack))
+
+    def score(self, twice: int) -> float | None:
+        """Return the part of the sampled wrong rows that an offset leaves wrong; None where it says too little."""
+        chosen = self.evidence.sample
+        best: float | None = None
+        for predicted, band in self.predictions(twice, chosen):
+            told = np.isfinite(band)
+            if np.count_nonzero(told) < 0.5 * chosen.size:
+                continue
+            misses = distance(self.evidence.force[chosen], predicted, band) > 1
+            left = float(np.mean(misses[told]))
+            best = left if best is None else min(best, left)
+        return best
+
+    def predictions(
+        self, twice: int, chosen: NDArray[np.intp] | None = None
+    ) -> Iterator[tuple[Array, Array]]:
+        """Yield the forces that an offset of so many half rows predicts, and their bands."""
+        evidence = self.evidence
+        rows = np.arange(evidence.force.size) if chosen is None else chosen
+        sources = [(evidence.expected, evidence.band)] if twice % 2 == 0 else self.middles
+        index = rows + twice // 2
+        for values, band in sources:
+            inside = (index >= 0) & (index < values.size)
+            safe = np.clip(index, 0, values.size - 1)
+            width = np.where(inside, band[safe] + evidence.rounding[rows], np.inf)
+            yield np.where(inside, values[safe], 0.0), width
+
+
+def corrupted(evidence: Evidence) -> Iterator[Explanation]:
+    """Take a few rows out of many as corrupted."""
+    if not evidence.rows:
+        return
+    wrong = evidence.wrong
+    if not 0 < wrong.size <= max(2.0, MOST_CORRUPTED * evidence.force.size):
+        return
+    runs = np.count_nonzero(np.diff(wrong) > 1) + 1
+    if wrong.size > 3 * runs:
+        return
+    yield corrupted_rows(evidence, wrong)
+
+
+def corrupted_rows(evidence: Evidence, wrong: NDArray[np.intp]) -> Explanation:
+    """Return the explanation that some rows are corrupted."""
+    predicted = evidence.expected.copy()
+    predicted[wrong] = evidence.force[wrong]
+    numbers = [int(row) + 1 for row in wrong]
+    shown = ", ".join(map(str, numbers[:8])) + (", …" if len(numbers) > 8 else "")
+    several = len(numbers) > 1
+    return Explanation(
+        predicted,
+        evidence.band + evidence.rounding,
+        f"{'Rows' if several else 'Row'} {shown} (of {evidence.force.size}) "
+        f"{'do' if several else 'does'} not fit {'their' if several else 'its'} neighbours; all others agree.",
+        "Recompute these rows, or take them out and interpolate.",
+        measured=float(len(numbers)),
+        details={"rows": numbers},
+        weight=0.3,
+    )

@@ -7,6 +7,7 @@ import json
 import os
 import sys
 from collections.abc import Callable, Iterable, Iterator, Sequence
+from pathlib import Path
 from typing import TYPE_CHECKING, Any
 
 if TYPE_CHECKING:
@@ -71,6 +72,8 @@ def _check_options(command: argparse.ArgumentParser) -> None:
     command.add_argument("files", nargs="+", metavar="FILE", help="potential document")
     command.add_argument("--json", action="store_true", help="print only the report, as JSON")
     command.add_argument("--strict", action="store_true", help="let a warning count as an error")
+    command.add_argument("--curve", action="store_true", help="draw each curve in the terminal")
+    command.add_argument("--junit", metavar="FILE", help="write the report as JUnit XML too")
     command.add_argument("--every-row", action="store_true", help="prove every row, not only a few hundred")
     command.set_defaults(command=_check)
 
@@ -79,7 +82,12 @@ def _check(options: argparse.Namespace) -> int:
     from .workflow import check
 
     report = check(options.files, every_row=options.every_row, track=_track)
-    _print_report(report, as_json=options.json)
+    if options.junit:
+        from .files.atomic import write_text
+        from .reports.junit import junit_text
+
+        write_text(Path(options.junit), junit_text(report, strict=options.strict))
+    _print_report(report, as_json=options.json, curves=options.curve)
     return _status(report, strict=options.strict)
 
 
@@ -156,9 +164,12 @@ def _units(options: argparse.Namespace) -> int:
 
 
 def _sheet_options(command: argparse.ArgumentParser) -> None:
-    command.add_argument("files", nargs="+", metavar="FILE", help="document or table; a second one is laid over the first")
+    command.add_argument("files", nargs="+", metavar="FILE", help="document or table; a second is laid over it")
     command.add_argument(
         "-o", "--output", metavar="OUT", help=".html, .png, .svg or .pdf (default: a page beside the first file)"
+    )
+    command.add_argument(
+        "--interaction", metavar="NAME", action="append", default=[], help="show only this one, such as W-P"
     )
     command.add_argument("--strict", action="store_true", help="let a warning count as an error")
     command.set_defaults(command=_sheet)
@@ -167,28 +178,25 @@ def _sheet_options(command: argparse.ArgumentParser) -> None:
 def _sheet(options: argparse.Namespace) -> int:
     from .sheets import sheet
 
-    path, shown = sheet(options.files, options.output, track=_track)
+    path, shown = sheet(options.files, options.output, only=options.interaction, track=_track)
     print(f"wrote {path}")
     failing = {"fail", "warn"} if options.strict else {"fail"}
     return FOUND if shown.record.get("verdict") in failing else GOOD
 
 
-def _sheet_options(command: argparse.ArgumentParser) -> None:
-    command.add_argument("files", nargs="+", metavar="FILE", help="document or table; a second one is laid over the first")
-    command.add_argument(
-        "-o", "--output", metavar="OUT", help=".html, .png, .svg or .pdf (default: a page beside the first file)"
-    )
-    command.add_argument("--strict", action="store_true", help="let a warning count as an error")
-    command.set_defaults(command=_sheet)
+def _completion_options(command: argparse.ArgumentParser) -> None:
+    command.add_argument("shell", metavar="SHELL", help="bash, fish or zsh")
+    command.set_defaults(command=_completion)
 
 
-def _sheet(options: argparse.Namespace) -> int:
-    from .sheets import sheet
+def _completion(options: argparse.Namespace) -> int:
+    from .forms import catalogue
+    from .reports.completion import SHELLS, commands_of, completion
+    from .schemas import NAMES
 
-    path, shown = sheet(options.files, options.output, track=_track)
-    print(f"wrote {path}")
-    failing = {"fail", "warn"} if options.strict else {"fail"}
-    return FOUND if shown.record.get("verdict") in failing else GOOD
+    words = {"completion": tuple(SHELLS), "forms": tuple(catalogue()), "schema": NAMES, "units": ()}
+    print(completion(options.shell, commands_of(parser(), words)), end="")
+    return GOOD
 
 
 def _schema_options(command: argparse.ArgumentParser) -> None:
@@ -209,12 +217,12 @@ def _schema(options: argparse.Namespace) -> int:
 COMMANDS: tuple[tuple[str, str, Callable[[argparse.ArgumentParser], None]], ...] = (
     ("check", "check potential documents: findings and landmarks", _check_options),
     ("tabulate", "check a document, then write every output that it names", _tabulate_options),
-    ("sheet", "write a page or a picture of curves, landmarks and findings", _sheet_options),
     ("plan", "how many rows each grid and interpolation rule needs", _plan_options),
     ("sheet", "write a page or a picture of curves, landmarks and findings", _sheet_options),
     ("forms", "list the catalogue of published forms, or show one", _forms_options),
     ("units", "convert a quantity to another unit", _units_options),
     ("schema", "print a published schema", _schema_options),
+    ("completion", "print a script that makes a shell complete commands", _completion_options),
 )
 """Every command: its name, its line of help, and what adds its options."""
 
@@ -232,13 +240,28 @@ def _print_json(data: Any) -> None:
     print()
 
 
-def _print_report(report: Report, *, as_json: bool) -> None:
+def _print_report(report: Report, *, as_json: bool, curves: bool = False) -> None:
     if as_json:
         _print_json(report.record())
         return
     from .reports.terminal import print_report
 
-    print_report(report, _console())
+    console = _console()
+    print_report(report, console, _curves(report, console) if curves else None)
+
+
+def _curves(report: Report, console: Console) -> dict[tuple[str, str], list[str]]:
+    """Return the curves to print, by file and interaction: plain where no person is looking."""
+    from .reports.curve import curve_lines
+    from .sheets import drawings_of
+
+    plain = not console.is_terminal or console.encoding.lower() not in ("utf-8", "utf8")
+    usable = [subject for subject in report.subjects if not subject.problems]
+    return {
+        (subject.file, drawing.name): curve_lines(drawing, console.width - 4, plain=plain)
+        for subject in usable
+        for drawing in drawings_of(Path(subject.file), subject.record())
+    }
 
 
 def _status(report: Report, *, strict: bool, accepted: bool = False) -> int:

@@ -2,15 +2,16 @@
 
 from __future__ import annotations
 
-from collections.abc import Callable, Sequence
+from collections.abc import Callable, Collection, Mapping, Sequence
 from dataclasses import replace
 from pathlib import Path
+from typing import Any
 
 from .document import Document, read_document
 from .files import format_of
 from .files.atomic import write_text
-from .problems import Problem, UnusableInput
-from .reports.drawing import document_drawings, overlaid, table_drawings
+from .problems import Problem, UnusableInput, nearest
+from .reports.drawing import Drawing, document_drawings, overlaid, table_drawings
 from .reports.page import Sheet, page
 from .table import Table
 from .workflow import Track, check_document, silently
@@ -23,6 +24,7 @@ def sheet(
     paths: Sequence[str | Path],
     out: str | Path | None = None,
     *,
+    only: Collection[str] = (),
     read: Callable[[Path], Table] | None = None,
     track: Track = silently,
 ) -> tuple[Path, Sheet]:
@@ -34,6 +36,8 @@ def sheet(
         One or two documents or tables; of two the second is laid over the first.
     out : path, optional
         Ends in .html, .png, .svg or .pdf; by default a page beside the first file.
+    only : collection of str
+        Interactions to show; all of them by default.
     read : callable, optional
         Reads tables that slopewell did not write.
     track : callable, optional
@@ -60,6 +64,7 @@ def sheet(
         raise UnusableInput([Problem("--output", says, f"End it in {', '.join(ENDINGS)}.")], str(target))
     sheets = [sheet_of(path, read=read, track=track) for path in files]
     shown = sheets[0] if len(sheets) == 1 else compared(sheets[0], sheets[1])
+    shown = _restricted(shown, only) if only else shown
     if target.suffix.lower() == ".html":
         write_text(target, page(shown))
     else:
@@ -67,6 +72,15 @@ def sheet(
 
         write_picture(shown.title, shown.drawings, target)
     return target, shown
+
+
+def _restricted(shown: Sheet, only: Collection[str]) -> Sheet:
+    known = [drawing.name for drawing in shown.drawings]
+    for name in only:
+        if name not in known:
+            says = f'There is no interaction "{name}".'
+            raise UnusableInput([Problem("--interaction", says, nearest(name, known))])
+    return replace(shown, drawings=tuple(drawing for drawing in shown.drawings if drawing.name in only))
 
 
 def _beside(files: list[Path]) -> Path:
@@ -78,12 +92,24 @@ def sheet_of(path: Path, *, read: Callable[[Path], Table] | None = None, track: 
     """Return what there is to show of a document or a table."""
     if read is None and is_document(path):
         return document_sheet(read_document(path), track=track)
+    return table_sheet(_read_table(path, read), path.name)
+
+
+def drawings_of(
+    path: Path, record: Mapping[str, Any], *, read: Callable[[Path], Table] | None = None
+) -> tuple[Drawing, ...]:
+    """Return the drawings of a document or a table that was checked already, given its subject's record."""
+    if read is None and is_document(path):
+        return document_drawings(read_document(path), record)
+    return table_drawings(_read_table(path, read), record)
+
+
+def _read_table(path: Path, read: Callable[[Path], Table] | None) -> Table:
     try:
-        table = (read or format_of(path).read)(path)
+        return (read or format_of(path).read)(path)
     except OSError as error:
         says = f"The file can't be read: {error.strerror or error}."
         raise UnusableInput([Problem("", says, "Check its name and permissions.")], str(path)) from None
-    return table_sheet(table, path.name)
 
 
 def is_document(path: Path) -> bool:

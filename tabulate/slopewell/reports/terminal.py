@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+from collections.abc import Mapping, Sequence
 from typing import Any
 
 from rich.console import Console
@@ -16,12 +17,19 @@ LEVEL_STYLES = {"error": "bold red", "warning": "yellow", "note": "cyan"}
 LABEL_WIDTH = 24
 
 
-def print_report(report: Report, console: Console) -> None:
-    """Print every subject of a report."""
+Curves = Mapping[tuple[str, str], Sequence[str]]
+"""Lines that draw a curve, by file and interaction."""
+
+
+def print_report(report: Report, console: Console, curves: Curves | None = None) -> None:
+    """Print every subject of a report, with curves where there are any."""
     for index, subject in enumerate(report.subjects):
         if index:
             console.print()
-        print_problems(subject, console) if subject.problems else print_subject(subject, console)
+        if subject.problems:
+            print_problems(subject, console)
+        else:
+            print_subject(subject, console, curves)
 
 
 def print_problems(subject: Subject, console: Console) -> None:
@@ -45,8 +53,8 @@ def print_problem(problem: Problem, console: Console) -> None:
         print_indented(Text(f"Try: {problem.remedy}", style="dim"), 4, console)
 
 
-def print_subject(subject: Subject, console: Console) -> None:
-    """Print what was found in a file."""
+def print_subject(subject: Subject, console: Console, curves: Curves | None = None) -> None:
+    """Print what was found in a file, with the curves of its interactions where there are any."""
     words, colour = VERDICTS[subject.verdict]
     head = Text(subject.file, style="bold")
     head.append(f"  {words}", style=f"bold {colour}")
@@ -58,6 +66,8 @@ def print_subject(subject: Subject, console: Console) -> None:
         print_landmarks(record, console)
         for label, value in certificate_lines(certificates.get(record["interaction"], {})):
             print_indented(Text(f"{label:<{LABEL_WIDTH}}{value}"), 4, console)
+        for line in (curves or {}).get((subject.file, record["interaction"]), ()):
+            print_indented(Text(line, no_wrap=True, overflow="crop"), 4, console)
         for finding in subject.findings:
             if finding.interaction == record["interaction"]:
                 print_finding(finding, console)

@@ -7,7 +7,11 @@ from fractions import Fraction
 import numpy as np
 from numpy.typing import NDArray
 
+from ..formula import parse
+from ..formula.balls import ball, series
 from ..formula.pairs import Pair, exact_product, pair
+from ..formula.roots import nearest_fraction
+from ..formula.taylor import accurate_derivatives
 from ..units import Unit
 
 Array = NDArray[np.float64]
@@ -30,7 +34,7 @@ def separations(start: Fraction, end: Fraction, rows: int, spacing: str, unit: U
     -------
     (rows,) array
         Ascending; the first and last are the doubles nearest to the stated ends, and each
-        other one is within a unit in the last place of its rule.
+        other one is within a unit in the last place of its rule, or two for ``logarithmic``.
     """
     first, last = start / unit.factor, end / unit.factor
     steps = np.arange(rows, dtype=np.float64)
@@ -64,7 +68,11 @@ def _in_inverse(first: Fraction, last: Fraction, steps: Array) -> Array:
 
 
 def _in_logarithm(first: Fraction, last: Fraction, steps: Array) -> Array:
-    r: Array = float(first) * np.exp(steps / (len(steps) - 1) * np.log(float(last / first)))
+    # In pairs, since an error in the exponent is one of the separation itself.
+    width = nearest_fraction(series(parse("log(r)"), ball(last / first), 0)[0])
+    exponent = Pair(steps, np.zeros_like(steps)) * pair(width / (len(steps) - 1))
+    (growth,) = accurate_derivatives(parse("exp(r)"), exponent, 0)
+    r: Array = (growth * pair(first)).rounded()
     return r
 
 

@@ -45,7 +45,8 @@ CURVES = {
     ),
     "branched": (
         text(
-            'energy = "c/r*where(r < edge, 1, 2)"\nparameters = { c = "2 eV angstrom", edge = "4 angstrom" }',
+            'energy = "c/r*where(r < edge, 1, 2)"\n'
+            'parameters = { c = "2 eV angstrom", edge = "4 angstrom" }\n',
             cutoff='cutoff = { at = 9, treatment = "truncate" }\n',
         ),
         branched_terms,

@@ -163,3 +163,11 @@ def test_the_precision_of_the_process_is_left_as_it_was() -> None:
     with pytest.raises(Undecided), precision(300):
         series(parse("abs(r)"), stretch(-1.0, 1.0), 2)
     assert (ctx.prec, ctx.cap) == before
+
+
+def test_a_tree_read_to_a_low_order_first_is_read_to_a_higher_one_after() -> None:
+    tree = bind(parse("1.5^0.5*r^2.5 + 3/r"), {})
+    low = series(tree, ball(2.0), 1)
+    high = series(tree, ball(2.0), 6)
+    assert all(a.overlaps(b) for a, b in zip(low, high, strict=False))
+    assert all(not coefficient.is_zero() for coefficient in high)

@@ -40,16 +40,19 @@ def last_places_off(curve: Curve, rows: Rows, units: UnitSystem, chosen: NDArray
     columns = [column[chosen] for column in stored if column is not None]
     angstrom = r * float(units.length.factor)
     terms = largest_terms(curve, angstrom, len(columns) - 1)
+    pieces = [curve.pieces[index] for index in curve.indices(angstrom)]
+    length = ball(units.length.factor)
+    factors = [units.length.factor**k / units.energy.factor * factorial(k) for k in range(len(columns))]
+    sizes = [np.maximum(terms[k] * float(factor), np.abs(columns[k])) for k, factor in enumerate(factors)]
+    last_places = [np.spacing(np.maximum(size, 1e-290)) for size in sizes]
+    exact_factors = [ball(factor) for factor in factors]
     worst = 0.0
-    for place, separation in enumerate(r.tolist()):
-        piece = curve.piece_at(float(angstrom[place]))
-        if piece.tree == ZERO:
-            continue
-        with precision():
-            exact = series(piece.tree, ball(separation) * ball(units.length.factor), len(columns) - 1)
-            for order, column in enumerate(columns):
-                factor = units.length.factor**order / units.energy.factor * factorial(order)
-                off = float(abs(exact[order] * ball(factor) - ball(float(column[place]))).upper())
-                size = terms[order, place] * float(factor)
-                worst = max(worst, off / float(np.spacing(max(size, abs(float(column[place])), 1e-290))))
+    with precision():
+        for place, separation in enumerate(r.tolist()):
+            if pieces[place].tree == ZERO:
+                continue
+            exact = series(pieces[place].tree, ball(separation) * length, len(columns) - 1)
+            for k, column in enumerate(columns):
+                off = float(abs(exact[k] * exact_factors[k] - ball(float(column[place]))).upper())
+                worst = max(worst, off / float(last_places[k][place]))
     return worst

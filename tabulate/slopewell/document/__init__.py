@@ -2,7 +2,7 @@
 
 from .build import read_document, understand
 from .model import ENDS, INTERPOLATIONS, SPACINGS, Document, Expectation, Grid, Interaction, Output
-from .source import Source, read_source
+from .source import Source, parse_source, read_source
 
 __all__ = [
     "ENDS",
@@ -14,6 +14,7 @@ __all__ = [
     "Interaction",
     "Output",
     "Source",
+    "parse_source",
     "read_document",
     "read_source",
     "understand",

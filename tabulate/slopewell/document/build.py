@@ -73,6 +73,8 @@ class _Builder:
             units=units,
             interactions=tuple(interaction for interaction in interactions if interaction is not None),
             outputs=outputs,
+            masses=masses,
+            charges={name: float(it["charge"]) for name, it in self.data["species"].items() if "charge" in it},
         )
 
     def optional(self, key: str, read: Any) -> Any:

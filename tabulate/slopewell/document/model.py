@@ -2,7 +2,8 @@
 
 from __future__ import annotations
 
-from dataclasses import dataclass
+from collections.abc import Mapping
+from dataclasses import dataclass, field
 from fractions import Fraction
 
 from ..potential import Potential
@@ -95,6 +96,10 @@ class Document:
     units : UnitSystem
     interactions : tuple of Interaction
     outputs : tuple of Output
+    masses : mapping
+        From species to dalton, where they are given.
+    charges : mapping
+        From species to elementary charges, where they are given.
     """
 
     file: str
@@ -106,3 +111,5 @@ class Document:
     units: UnitSystem
     interactions: tuple[Interaction, ...]
     outputs: tuple[Output, ...]
+    masses: Mapping[str, Fraction] = field(default_factory=dict)
+    charges: Mapping[str, float] = field(default_factory=dict)

@@ -45,14 +45,24 @@ def read_source(path: str | Path) -> Source:
     """
     file = str(path)
     raw = _bytes(Path(path), file)
-    text = _text(raw, file)
+    return parse_source(_text(raw, file), file, hashlib.sha256(raw).hexdigest())
+
+
+def parse_source(text: str, file: str, sha256: str) -> Source:
+    """Return the source that a text is, such as one that a table stores.
+
+    Raises
+    ------
+    UnusableInput
+        If it is neither TOML nor JSON.
+    """
     is_json = file.lower().endswith(".json") or text.lstrip()[:1] == "{"
     data = _json(text, file) if is_json else _toml(text, file)
     if not isinstance(data, dict):
         raise UnusableInput([Problem("", "The document is not a table of keys.", "Begin with schema = …")], file)
     if problems := _outsize_numbers(data, ""):
         raise UnusableInput(problems, file)
-    return Source(file, text, hashlib.sha256(raw).hexdigest(), data, {} if is_json else key_lines(text))
+    return Source(file, text, sha256, data, {} if is_json else key_lines(text))
 
 
 def _bytes(path: Path, file: str) -> bytes:

@@ -27,8 +27,9 @@ def write(table: Table, path: Path) -> None:
             if key != "report":
                 file.attrs[key] = value if isinstance(value, str) else json.dumps(value, ensure_ascii=False)
         file["report"] = json.dumps(table.report, indent=1, ensure_ascii=False)
+        interactions = file.create_group("interactions", track_order=True)
         for rows in table.interactions:
-            _write_rows(file.create_group(f"interactions/{rows.name}"), rows, table.units)
+            _write_rows(interactions.create_group(rows.name), rows, table.units)
 
 
 def _write_rows(group: Any, rows: Rows, units: UnitSystem) -> None:

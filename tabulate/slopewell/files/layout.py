@@ -5,7 +5,7 @@ from __future__ import annotations
 import io
 import re
 import string
-from dataclasses import dataclass
+from dataclasses import dataclass, replace
 from pathlib import Path
 from typing import Any
 
@@ -72,7 +72,11 @@ def read_layout(path: Path) -> Layout:
             problems += _field_problems(line, f"{key}[{index}]", source.line(key))
     columns = tuple(Column(entry["quantity"], entry.get("format", "")) for entry in data["column"])
     problems += _column_problems(columns, data.get("separator", " "))
-    units = unit_system(data["units"]["energy"], data["units"]["length"]) if "units" in data else None
+    units = None
+    try:
+        units = unit_system(data["units"]["energy"], data["units"]["length"]) if "units" in data else None
+    except UnusableInput as error:
+        problems += [replace(problem, at="units", line=source.line("units")) for problem in error.problems]
     if problems:
         raise UnusableInput(problems, str(path))
     return Layout(

@@ -2,6 +2,7 @@
 
 LAYERS = (
     "problems",
+    "showing",
     "formula",
     "units",
     "schemas",
@@ -15,7 +16,10 @@ LAYERS = (
     "reports",
     "outputs",
     "planning",
+    "forecasting",
     "workflow",
+    "tabulating",
     "sheets",
+    "notebook",
     "cli",
 )

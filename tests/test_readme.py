@@ -5,6 +5,7 @@ from __future__ import annotations
 import hashlib
 import re
 import tomllib
+from importlib import import_module
 
 import pytest
 from documentation import GENERATED, ROOT, generated
@@ -54,3 +55,9 @@ def test_every_command_that_is_named_exists() -> None:
 @pytest.mark.parametrize("link", re.findall(r"\]\(([^)#]+)\)", README))
 def test_every_linked_file_exists(link: str) -> None:
     assert (ROOT / link).exists()
+
+
+@pytest.mark.parametrize("name", re.findall(r"`slopewell\.([a-z_]+\.[a-z_]+)`", README))
+def test_every_function_that_is_named_exists(name: str) -> None:
+    module, function = name.split(".")
+    assert callable(getattr(import_module(f"slopewell.{module}"), function))

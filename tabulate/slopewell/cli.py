@@ -15,6 +15,7 @@ if TYPE_CHECKING:
 
     from .problems import UnusableInput
     from .reports import Report
+    from .tables import Reading
 
 GOOD, FOUND, UNUSABLE = 0, 1, 2
 """Exit status: nothing worse than a warning; an error was found; the input can't be used."""
@@ -69,7 +70,8 @@ def _version() -> str:
 
 
 def _check_options(command: argparse.ArgumentParser) -> None:
-    command.add_argument("files", nargs="+", metavar="FILE", help="potential document")
+    command.add_argument("files", nargs="+", metavar="FILE", help="potential document or table")
+    _foreign_options(command)
     command.add_argument("--json", action="store_true", help="print only the report, as JSON")
     command.add_argument("--strict", action="store_true", help="let a warning count as an error")
     command.add_argument("--curve", action="store_true", help="draw each curve in the terminal")
@@ -78,10 +80,31 @@ def _check_options(command: argparse.ArgumentParser) -> None:
     command.set_defaults(command=_check)
 
 
+def _foreign_options(command: argparse.ArgumentParser) -> None:
+    """Add what describes a table that slopewell did not write."""
+    command.add_argument("--columns", metavar="NAMES", default="", help="such as row,separation,energy,force")
+    command.add_argument("--units", metavar="ENERGY,LENGTH", default="", help="units of the table's columns")
+    command.add_argument("--layout", metavar="FILE", default="", help="layout of the table, instead of columns")
+    command.add_argument("--block", metavar="N", type=int, help="which block of rows to read, from 1")
+    command.add_argument(
+        "--purpose",
+        choices=("sampling", "dynamics", "lattice-dynamics"),
+        default="",
+        help="what the table is for",
+    )
+
+
+def _foreign_reading(options: argparse.Namespace) -> Reading:
+    from .tables import Reading
+
+    names = tuple(name.strip() for name in options.columns.split(",") if name.strip())
+    return Reading(names, options.units, options.layout, options.block, options.purpose)
+
+
 def _check(options: argparse.Namespace) -> int:
     from .workflow import check
 
-    report = check(options.files, every_row=options.every_row, track=_track)
+    report = check(options.files, reading=_foreign_reading(options), every_row=options.every_row, track=_track)
     if options.junit:
         from .files.atomic import write_text
         from .reports.junit import junit_text

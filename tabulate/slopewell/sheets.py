@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+import re
 from collections.abc import Callable, Collection, Mapping, Sequence
 from dataclasses import replace
 from pathlib import Path
@@ -118,7 +119,7 @@ def is_document(path: Path) -> bool:
         return path.suffix.lower() == ".toml"
     try:
         with path.open(encoding="utf-8", errors="replace") as file:
-            return "slopewell/potential/" in file.read(4000)
+            return re.search(r'"schema"\s*:\s*"slopewell/potential/', file.read(4000)) is not None
     except OSError:
         return True
 

@@ -7,6 +7,7 @@ from dataclasses import dataclass, field
 from fractions import Fraction
 
 from ..potential import Potential
+from ..showing import Shown
 from ..units import UnitSystem
 
 SPACINGS = ("separation", "separation-squared", "inverse", "logarithmic")
@@ -82,7 +83,7 @@ class Output:
 
 
 @dataclass(frozen=True, slots=True)
-class Document:
+class Document(Shown):
     """A potential document.
 
     Attributes

@@ -5,12 +5,13 @@ from __future__ import annotations
 from dataclasses import dataclass
 from fractions import Fraction
 
+from ..showing import Shown
 from .curve import Curve
 from .cutoff import Cutoff
 
 
 @dataclass(frozen=True, slots=True)
-class Potential:
+class Potential(Shown):
     """The energy of a pair of species.
 
     Attributes

@@ -243,7 +243,8 @@ def overlaid(drawing: Drawing, other: Drawing, labels: tuple[str, str]) -> Drawi
 def _annotated(drawing: Drawing, record: Mapping[str, Any]) -> Drawing:
     flags = flags_in(record, drawing.name, drawing.units)
     levels = {flag.finding["level"] for flag in flags}
-    verdict = "fail" if "error" in levels else "warn" if "warning" in levels else "pass"
+    worst = "fail" if "error" in levels else "warn" if "warning" in levels else "pass"
+    verdict = worst if "verdict" in record else "unchecked"
     columns = {"energy": drawing.energy, "force": drawing.force}
     present = {name for name, column in columns.items() if column is not None}
     marks = tuple(mark for mark in marks_of(drawing.landmarks) if mark.panel in present)

@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+from collections.abc import Sequence
 from html import escape
 
 from .view import number_text, unit_text
@@ -24,7 +25,7 @@ def tag(name: str, *children: str, **attributes: Attribute) -> Markup:
     return Markup(f"<{name}{written}>{join(children)}</{name}>")
 
 
-def join(children: tuple[str, ...] | list[str]) -> Markup:
+def join(children: Sequence[str]) -> Markup:
     """Return children one after the other; what is no markup is escaped."""
     return Markup(
         "".join(child if isinstance(child, Markup) else escape(child, quote=False) for child in children)

@@ -60,5 +60,6 @@ def _key(drawings: Sequence[Drawing]) -> Markup:
             f" {VERDICTS[name].words.lower()}: {count}",
         )
         for name, count in counts.items()
+        if count
     ]
     return tag("ul", *items, class_="key")

@@ -19,6 +19,7 @@ from .article import article
 from .drawing import Drawing
 from .markup import Markup, join, tag
 from .matrix import matrix
+from .report import Report
 from .verdicts import VERDICTS, mark_of, plural
 from .view import unit_text
 
@@ -88,17 +89,6 @@ def unit_systems_of(drawings: Sequence[Drawing]) -> list[UnitSystem]:
 
 
 def _header(sheet: Sheet, systems: Sequence[UnitSystem]) -> Markup:
-    verdict = str(sheet.record.get("verdict", ""))
-    findings = sheet.record.get("findings", [])
-    counts = [
-        plural(sum(finding["level"] == level for finding in findings), level)
-        for level in ("error", "warning", "note")
-    ]
-    checked = len(sheet.record.get("checked", ()))
-    looked = (
-        f"{plural(checked, 'check')} over {plural(len(sheet.drawings), 'interaction')}" if checked else ""
-    )
-    words = VERDICTS[verdict].words if verdict in VERDICTS else "Not checked"
     options = [
         tag("option", f"{unit_text(system.energy.text)} and {unit_text(system.length.text)}", value=index)
         for index, system in enumerate(systems)
@@ -107,13 +97,7 @@ def _header(sheet: Sheet, systems: Sequence[UnitSystem]) -> Markup:
         [
             tag("h1", sheet.title),
             tag("p", "Source: ", sheet.source, class_="source") if sheet.source else Markup(""),
-            tag(
-                "div",
-                tag("p", mark_of(verdict), " ", words, class_="words"),
-                tag("p", "; ".join(part for part in (looked, ", ".join(counts) if checked else "") if part)),
-                _worst_first(sheet),
-                class_=f"verdict {verdict or 'none'}",
-            ),
+            _verdict(sheet.record, len(sheet.drawings), _worst_first(sheet)),
             tag(
                 "p",
                 tag("label", "Units ", for_="units"),
@@ -122,6 +106,56 @@ def _header(sheet: Sheet, systems: Sequence[UnitSystem]) -> Markup:
             ),
         ]
     )
+
+
+def _verdict(record: Mapping[str, Any], interactions: int, below: Markup) -> Markup:
+    verdict = str(record.get("verdict", "unchecked"))
+    levels = [finding["level"] for finding in record.get("findings", ())]
+    counts = ", ".join(plural(levels.count(level), level) for level in ("error", "warning", "note"))
+    checked = len(record.get("checked", ()))
+    looked = f"{plural(checked, 'check')} over {plural(interactions, 'interaction')}: {counts}"
+    return tag(
+        "div",
+        tag("p", mark_of(verdict), " ", VERDICTS[verdict].words, class_="words"),
+        *([tag("p", looked)] if checked else []),
+        below,
+        class_=f"verdict {verdict}",
+    )
+
+
+def report_page(report: Report) -> str:
+    """Return a report alone as a page: verdicts, findings and landmarks, without curves."""
+    parts = [_subject(subject.record()) for subject in report.subjects]
+    return Template(_part("page_template.html")).substitute(
+        title="Report",
+        style=_part("page_template.css"),
+        script="",
+        header=join(parts),
+        index="",
+        articles="",
+        provenance="",
+        caution=escape(CAUTION),
+        writer=escape(f"slopewell {__version__}"),
+        numbers="{}",
+    )
+
+
+def _subject(record: Mapping[str, Any]) -> Markup:
+    problems = [
+        tag("li", tag("b", each["at"]), f" {each['says']} {each['try']}")
+        for each in record.get("problems", ())
+    ]
+    findings = [
+        tag(
+            "li",
+            tag("b", f"{each['level']} {each['interaction'] or ''}"),
+            f" {each['check']}: {each['says']}",
+        )
+        for each in record.get("findings", ())
+    ]
+    listed = [*problems, *findings]
+    below = tag("ul", *listed) if listed else Markup("")
+    return join([tag("h1", record["file"]), _verdict(record, len(record.get("landmarks", ())), below)])
 
 
 MOST_LISTED = 8
@@ -152,12 +186,13 @@ def _worst_first(sheet: Sheet) -> Markup:
 
 def _provenance(sheet: Sheet) -> Markup:
     facts = [join([tag("dt", label), tag("dd", value)]) for label, value in sheet.facts if value]
-    text = (
-        tag("details", tag("summary", "The document"), tag("pre", tag("code", sheet.document), tabindex=0))
-        if sheet.document
-        else Markup("")
-    )
-    return join([tag("dl", *facts), text])
+    if not facts:
+        return Markup("")
+    parts = [tag("h2", "Where this comes from", id_="provenance"), tag("dl", *facts)]
+    if sheet.document:
+        text = tag("pre", tag("code", sheet.document), tabindex=0, role="group", aria_label="text of the document")
+        parts.append(tag("details", tag("summary", "The document"), text))
+    return tag("section", *parts, class_="provenance", aria_labelledby="provenance")
 
 
 def _numbers(drawings: Sequence[Drawing], systems: Sequence[UnitSystem]) -> str:

@@ -96,7 +96,7 @@
     const separation = columnsOf(number).separation;
     slider.max = separation.length - 1;
     slider.disabled = false;
-    slider.addEventListener("input", () => show(figure, Number(slider.value)));
+    for (const event of ["input", "focus"]) slider.addEventListener(event, () => show(figure, Number(slider.value)));
     const stack = figure.querySelector(".stack");
     stack.addEventListener("pointermove", (event) => {
       const box = figure.querySelector(".plot").getBoundingClientRect();

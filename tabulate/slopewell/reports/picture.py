@@ -88,6 +88,7 @@ def write_picture(title: str, drawings: Sequence[Drawing], path: Path) -> None:
     figure = figure_of(title, drawings)
     no_clock = {".svg": {"Date": None}, ".pdf": {"CreationDate": None}}.get(path.suffix.lower(), {})
     try:
+        path.parent.mkdir(parents=True, exist_ok=True)
         with mpl.rc_context(STYLE):
             figure.savefig(path, dpi=160, metadata=no_clock)
     except OSError as error:
@@ -139,16 +140,9 @@ def _panel(ax: Axes, panel: Panel, drawing: Drawing, *, labelled: bool) -> None:
     if panel.kind == "energy":
         _ends(ax, drawing)
     for words, height, side in zip(panel.words, (0.97, 0.14), ("top", "bottom"), strict=True):
-        ax.text(
-            0.985,
-            height,
-            words,
-            transform=ax.transAxes,
-            ha="right",
-            va=side,
-            color=COLOURS[column],
-            fontsize="small",
-        )
+        if words:
+            place = {"transform": ax.transAxes, "ha": "right", "va": side}
+            ax.text(0.985, height, words, color=COLOURS[column], fontsize="small", **place)
     if drawing.other is not None and panel.high:
         ax.legend(loc="center right", frameon=False, fontsize="small")
 

@@ -10,6 +10,7 @@ from ..checks import Finding, PotentialFacts, worst
 from ..potential import Landmarks
 from ..potential.landmarks import classical_amplitude, harmonic_wavenumber
 from ..problems import Problem, UnusableInput
+from ..showing import Shown
 from ..units import UnitSystem
 
 SCHEMA = "slopewell/report/1"
@@ -75,7 +76,7 @@ class Subject:
 
 
 @dataclass(frozen=True, slots=True)
-class Report:
+class Report(Shown):
     """The subjects of one call, in the order of the command line."""
 
     subjects: tuple[Subject, ...] = field(default=())

@@ -19,13 +19,14 @@ VERDICTS = {
     "pass": Verdict("Passes", "✓"),
     "warn": Verdict("Passes with warnings", "▲"),
     "fail": Verdict("Fails", "✕"),
+    "unusable": Verdict("Can't be used", "✕"),
+    "unchecked": Verdict("Not checked", "?"),
 }
 
 
 def mark_of(verdict: str) -> Markup:
     """Return the sign of a verdict, hidden from screen readers, which get the words."""
-    sign = VERDICTS[verdict].sign if verdict in VERDICTS else "?"
-    return tag("span", sign, class_="sign", aria_hidden="true")
+    return tag("span", VERDICTS[verdict].sign, class_="sign", aria_hidden="true")
 
 
 def plural(count: int, word: str) -> str:

@@ -80,7 +80,8 @@ def _range(r: Array, values: Array, anchor: float, headroom: float) -> Limits:
     far = calm[r >= anchor] if np.any(r >= anchor) else calm
     low, high = min(float(far.min()), 0.0), max(float(far.max()), 0.0)
     span = (high - low) or 1.0
-    top = min(float(calm.max()) + 0.08 * span, high + headroom * span)
+    # Without a well there is more room above: a bounded repulsion is seen whole.
+    top = min(float(calm.max()) + 0.08 * span, high + (headroom if low < 0 else 4.0) * span)
     base = low - (0.28 if low < 0 else 0.08) * span
     return base, max(top, 0.12 * span)
 

@@ -8,6 +8,7 @@ from typing import Any
 import numpy as np
 from numpy.typing import NDArray
 
+from ..showing import Shown
 from ..units import UnitSystem
 
 Array = NDArray[np.float64]
@@ -56,7 +57,7 @@ class Rows:
 
 
 @dataclass(frozen=True, slots=True, eq=False)
-class Table:
+class Table(Shown):
     """Rows of one or more interactions, with units and provenance.
 
     Attributes

@@ -17,6 +17,7 @@ LAYERS = (
     "outputs",
     "planning",
     "forecasting",
+    "tables",
     "workflow",
     "tabulating",
     "sheets",

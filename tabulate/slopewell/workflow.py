@@ -11,6 +11,7 @@ from .checks import POTENTIAL_CHECKS, Finding, PotentialFacts, potential_facts, 
 from .document import Document, read_document
 from .problems import UnusableInput
 from .reports import Report, Subject, certificate_record, potential_landmarks, unusable
+from .tables import Reading, check_loaded, is_table, load
 
 Track = Callable[[Iterable[Any], str], Iterator[Any]]
 """Something that passes items through and may show how far it is."""
@@ -21,12 +22,20 @@ def silently(items: Iterable[Any], label: str) -> Iterator[Any]:
     return iter(items)
 
 
-def check(paths: Iterable[str | Path], *, every_row: bool = False, track: Track = silently) -> Report:
-    """Check potential documents.
+def check(
+    paths: Iterable[str | Path],
+    *,
+    reading: Reading | None = None,
+    every_row: bool = False,
+    track: Track = silently,
+) -> Report:
+    """Check potential documents and tables.
 
     Parameters
     ----------
     paths : iterable of path
+    reading : Reading, optional
+        How tables that slopewell did not write are to be read.
     every_row : bool
         Prove each row of the tables that the documents ask for to be right to its last places.
     track : callable, optional
@@ -37,11 +46,14 @@ def check(paths: Iterable[str | Path], *, every_row: bool = False, track: Track 
     Report
         One subject a file, in order; a file that can't be used has problems instead of findings.
     """
-    return Report(tuple(_check_file(str(path), every_row, track) for path in paths))
+    chosen = reading or Reading()
+    return Report(tuple(_check_file(str(path), chosen, every_row, track) for path in paths))
 
 
-def _check_file(file: str, every_row: bool, track: Track) -> Subject:
+def _check_file(file: str, reading: Reading, every_row: bool, track: Track) -> Subject:
     try:
+        if is_table(file, reading):
+            return check_loaded(load(file, reading), file)
         document = read_document(file)
         subject, facts = check_document(document, track=track)
         return _prove(subject, facts, track) if every_row else subject

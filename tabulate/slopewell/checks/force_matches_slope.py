@@ -69,10 +69,10 @@ def look_at_table(facts: TableFacts) -> Iterator[Finding]:
             remedy="Add rows.",
         )
         return
-    yield from judge(evidence, "the force column", 1.0)
+    yield from judge(evidence, "the force column", None)
 
 
-def judge(evidence: Evidence, subject: str, limit: float) -> Iterator[Finding]:
+def judge(evidence: Evidence, subject: str, limit: float | None) -> Iterator[Finding]:
     """Make a finding of a contradiction, naming the mistake where one explains it."""
     wrong = evidence.wrong
     if not wrong.size:

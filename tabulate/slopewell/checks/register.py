@@ -4,17 +4,24 @@ from __future__ import annotations
 
 from . import (
     cutoff_steps,
+    enough_digits,
     expected_landmarks,
     finite,
     first_row_energy,
     force_matches_slope,
+    last_row,
     repulsive_core,
+    row_shape,
+    rows_evenly_spaced,
+    rows_ordered,
+    rows_readable,
     single_well,
     smooth_inside,
     table_error,
 )
 from .findings import Check
 from .potential_facts import PotentialFacts
+from .table_facts import TableFacts
 
 POTENTIAL_CHECKS: tuple[Check[PotentialFacts], ...] = (
     finite.CHECK,
@@ -28,3 +35,15 @@ POTENTIAL_CHECKS: tuple[Check[PotentialFacts], ...] = (
     table_error.CHECK,
 )
 """Checks of a potential document."""
+
+TABLE_CHECKS: tuple[Check[TableFacts], ...] = (
+    rows_readable.CHECK,
+    rows_ordered.CHECK,
+    rows_evenly_spaced.CHECK,
+    force_matches_slope.TABLE_CHECK,
+    enough_digits.CHECK,
+    last_row.CHECK,
+    row_shape.CORE_CHECK,
+    row_shape.WELL_CHECK,
+)
+"""Checks of a table, its rows alone."""

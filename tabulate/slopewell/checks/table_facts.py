@@ -2,7 +2,8 @@
 
 from __future__ import annotations
 
-from dataclasses import dataclass
+from collections.abc import Mapping
+from dataclasses import dataclass, field
 from functools import cached_property
 
 import numpy as np
@@ -10,14 +11,18 @@ from numpy.typing import NDArray
 
 from ..table import Rows
 from ..units import UnitSystem
+from ..units.constants import BOLTZMANN
 from .digits import EPSILON, digits, separation_rounding
 from .mistakes import Evidence
+from .row_landmarks import RowLandmarks, row_landmarks
 from .slopes import slopes
 
 Array = NDArray[np.float64]
 
 TERMS = 8.0
 """Units in the last place of the largest term that a clean number may be off by."""
+ROOM_TEMPERATURE = 300
+"""In kelvin: the energy scale of a table without a well."""
 
 
 @dataclass(frozen=True)
@@ -30,11 +35,32 @@ class TableFacts:
     units : UnitSystem
     purpose : str
         What the table is for; empty where it is not known.
+    stored : mapping
+        Largest rounding error of the numbers of a column, where its digits do not show it.
     """
 
     rows: Rows
     units: UnitSystem
     purpose: str = ""
+    stored: Mapping[str, Array] = field(default_factory=dict)
+
+    @cached_property
+    def rounding(self) -> dict[str, Array]:
+        """Largest rounding error of each number, by column."""
+        found = {"separation": separation_rounding(self.rows.separation)}
+        for name in ("energy", "force"):
+            column = self.rows.column(name)
+            if column is not None:
+                found[name] = digits(column).rounding(column)
+        return found | dict(self.stored)
+
+    @cached_property
+    def energy(self) -> Array:
+        """The energies; where the table has none, the integral of the force, zero at the last row."""
+        if self.rows.energy is not None:
+            return self.rows.energy
+        assert self.rows.force is not None
+        return integral(self.rows.separation, self.rows.force)
 
     @cached_property
     def evidence(self) -> Evidence | None:
@@ -42,10 +68,24 @@ class TableFacts:
         rows = self.rows
         if rows.energy is None or rows.force is None:
             return None
-        return rows_evidence(rows.separation, rows.energy, rows.force, self.units)
+        return rows_evidence(rows.separation, rows.energy, rows.force, self.units, self.rounding)
+
+    @cached_property
+    def landmarks(self) -> RowLandmarks:
+        """Landmarks of the curve that the rows stand for."""
+        rounding = self.rounding.get("energy")
+        return row_landmarks(self.rows.separation, self.energy, rounding)
+
+    @cached_property
+    def energy_scale(self) -> float:
+        """The energy that steps are judged by: the depth of the well, else k_B·T at 300 K."""
+        depth = self.landmarks.well_depth
+        return depth or float(BOLTZMANN * ROOM_TEMPERATURE / self.units.energy.factor)
 
 
-def rows_evidence(separation: Array, energy: Array, force: Array, units: UnitSystem) -> Evidence:
+def rows_evidence(
+    separation: Array, energy: Array, force: Array, units: UnitSystem, rounding: Mapping[str, Array] | None = None
+) -> Evidence:
     """Return stated against expected forces of rows.
 
     Parameters
@@ -53,28 +93,43 @@ def rows_evidence(separation: Array, energy: Array, force: Array, units: UnitSys
     separation, energy, force : (n,) array
         Separations strictly ascending.
     units : UnitSystem
+    rounding : mapping, optional
+        Largest rounding error of each number by column; by default as the digits of the columns show.
     """
-    own = separation_rounding(separation)
+    known = dict(rounding or {})
+    own = known.get("separation", separation_rounding(separation))
+    of_energy = known.get("energy", digits(energy).rounding(energy))
+    of_force = known.get("force", digits(force).rounding(force))
     with np.errstate(all="ignore"):
         steep, bend = _size_of_slope(separation, energy), _size_of_bend(separation, energy)
         largest = np.abs(energy) + steep * separation + bend * separation**2
-        found = slopes(separation, energy, digits(energy).rounding(energy) + TERMS * EPSILON * largest, own)
+        found = slopes(separation, energy, of_energy + TERMS * EPSILON * largest, own)
         band = found.band + bend * own + TERMS * EPSILON * (steep + bend * separation)
+    turned = {"separation": own, "energy": of_force, "force": of_energy}
     return Evidence(
         separation=separation,
         energy=energy,
         force=force,
         expected=0.0 - found.values,
         band=np.where(np.isfinite(band), band, np.inf),
-        rounding=digits(force).rounding(force),
+        rounding=of_force,
         units=units,
-        exchanged=lambda: rows_evidence(separation, force, energy, units),
+        exchanged=lambda: rows_evidence(separation, force, energy, units, turned),
     )
+
+
+def integral(separation: Array, force: Array) -> Array:
+    """Return the energy of forces, zero at the last row, by cubic interpolation of the force."""
+    from scipy.interpolate import CubicSpline
+
+    area: Array = CubicSpline(separation, force).antiderivative()(separation)
+    return area[-1] - area
 
 
 def _size_of_slope(separation: Array, energy: Array) -> Array:
     steps = np.abs(np.diff(energy) / np.diff(separation))
-    return np.maximum(np.append(steps, steps[-1:]), np.insert(steps, 0, steps[:1]))
+    larger: Array = np.maximum(np.append(steps, steps[-1:]), np.insert(steps, 0, steps[:1]))
+    return larger
 
 
 def _size_of_bend(separation: Array, energy: Array) -> Array:

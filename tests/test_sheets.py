@@ -8,7 +8,6 @@ from pathlib import Path
 import pytest
 from documentation import ROOT
 from slopewell.cli import main
-from slopewell.files import format_of
 from slopewell.problems import UnusableInput
 from slopewell.reports.page import Sheet
 from slopewell.sheets import drawings_of, sheet, sheet_of
@@ -69,7 +68,7 @@ def test_the_same_document_gives_the_same_page(pair: Path) -> None:
     assert first.read_bytes() == second.read_bytes()
 
 
-def test_a_table_keeps_the_report_it_was_written_with(table: Path) -> None:
+def test_a_table_is_checked_and_knows_its_document(table: Path) -> None:
     shown = sheet_of(table)
     assert shown.record["verdict"] in ("pass", "warn")
     assert shown.drawings[0].cutoff == pytest.approx(9.0)
@@ -147,6 +146,9 @@ def test_every_command_is_completed(capsys: pytest.CaptureFixture[str]) -> None:
         assert f"    {name}) words=" in said
 
 
-def test_a_table_of_another_format_is_read_by_its_own(table: Path) -> None:
-    read = format_of(table).read
-    assert sheet_of(table, read=read).drawings[0].rows == 101
+def test_a_table_from_elsewhere_is_described(tmp_path: Path) -> None:
+    path = tmp_path / "old.dat"
+    path.write_text("".join(f"{r} {1 / r}\n" for r in range(1, 30)), encoding="utf-8")
+    arguments = ["sheet", str(path), "--columns", "separation,energy", "--units", "eV,bohr"]
+    main(arguments)
+    assert "<h1>old.dat</h1>" in path.with_suffix(".html").read_text(encoding="utf-8")

@@ -104,13 +104,14 @@ def _foreign_reading(options: argparse.Namespace) -> Reading:
 def _check(options: argparse.Namespace) -> int:
     from .workflow import check
 
-    report = check(options.files, reading=_foreign_reading(options), every_row=options.every_row, track=_track)
+    reading = _foreign_reading(options)
+    report = check(options.files, reading=reading, every_row=options.every_row, track=_track)
     if options.junit:
         from .files.atomic import write_text
         from .reports.junit import junit_text
 
         write_text(Path(options.junit), junit_text(report, strict=options.strict))
-    _print_report(report, as_json=options.json, curves=options.curve)
+    _print_report(report, as_json=options.json, reading=reading if options.curve else None)
     return _status(report, strict=options.strict)
 
 
@@ -194,6 +195,7 @@ def _sheet_options(command: argparse.ArgumentParser) -> None:
     command.add_argument(
         "--interaction", metavar="NAME", action="append", default=[], help="show only this one, such as W-P"
     )
+    _foreign_options(command)
     command.add_argument("--strict", action="store_true", help="let a warning count as an error")
     command.set_defaults(command=_sheet)
 
@@ -201,7 +203,7 @@ def _sheet_options(command: argparse.ArgumentParser) -> None:
 def _sheet(options: argparse.Namespace) -> int:
     from .sheets import sheet
 
-    path, shown = sheet(options.files, options.output, only=options.interaction, track=_track)
+    path, shown = sheet(options.files, options.output, only=options.interaction, reading=_foreign_reading(options), track=_track)
     print(f"wrote {path}")
     failing = {"fail", "warn"} if options.strict else {"fail"}
     return FOUND if shown.record.get("verdict") in failing else GOOD
@@ -263,17 +265,17 @@ def _print_json(data: Any) -> None:
     print()
 
 
-def _print_report(report: Report, *, as_json: bool, curves: bool = False) -> None:
+def _print_report(report: Report, *, as_json: bool, reading: Reading | None = None) -> None:
     if as_json:
         _print_json(report.record())
         return
     from .reports.terminal import print_report
 
     console = _console()
-    print_report(report, console, _curves(report, console) if curves else None)
+    print_report(report, console, _curves(report, console, reading) if reading is not None else None)
 
 
-def _curves(report: Report, console: Console) -> dict[tuple[str, str], list[str]]:
+def _curves(report: Report, console: Console, reading: Reading) -> dict[tuple[str, str], list[str]]:
     """Return the curves to print, by file and interaction: plain where no person is looking."""
     from .reports.curve import curve_lines
     from .sheets import drawings_of
@@ -283,7 +285,7 @@ def _curves(report: Report, console: Console) -> dict[tuple[str, str], list[str]
     return {
         (subject.file, drawing.name): curve_lines(drawing, console.width - 4, plain=plain)
         for subject in usable
-        for drawing in drawings_of(Path(subject.file), subject.record())
+        for drawing in drawings_of(Path(subject.file), subject.record(), reading)
     }
 
 

@@ -38,7 +38,7 @@ def _document(value: Document) -> Sheet:
 
 @sheet_of_value.register
 def _table(value: Table) -> Sheet:
-    return table_sheet(value, value.title or "Table")
+    return table_sheet(value, value.title or "Table", next(iter(value.report.get("subjects", ())), {}))
 
 
 @sheet_of_value.register

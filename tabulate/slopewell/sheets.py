@@ -2,23 +2,24 @@
 
 from __future__ import annotations
 
-import re
-from collections.abc import Callable, Collection, Mapping, Sequence
+from collections.abc import Collection, Mapping, Sequence
 from dataclasses import replace
 from pathlib import Path
 from typing import Any
 
 from .document import Document, read_document
-from .files import format_of
 from .files.atomic import write_text
 from .problems import Problem, UnusableInput, nearest
 from .reports.drawing import Drawing, document_drawings, overlaid, table_drawings
 from .reports.page import Sheet, page
 from .table import Table
+from .tables import Reading, check_loaded, is_table, load
 from .workflow import Track, check_document, silently
 
 PICTURES = (".png", ".svg", ".pdf")
 ENDINGS = (".html", *PICTURES)
+OWN = Reading()
+"""Reads what slopewell wrote."""
 
 
 def sheet(
@@ -26,7 +27,7 @@ def sheet(
     out: str | Path | None = None,
     *,
     only: Collection[str] = (),
-    read: Callable[[Path], Table] | None = None,
+    reading: Reading = OWN,
     track: Track = silently,
 ) -> tuple[Path, Sheet]:
     """Write a page or a picture of one file, or of two over each other.
@@ -39,8 +40,8 @@ def sheet(
         Ends in .html, .png, .svg or .pdf; by default a page beside the first file.
     only : collection of str
         Interactions to show; all of them by default.
-    read : callable, optional
-        Reads tables that slopewell did not write.
+    reading : Reading, optional
+        Describes a table that slopewell did not write.
     track : callable, optional
         Shows progress.
 
@@ -63,7 +64,7 @@ def sheet(
     if target.suffix.lower() not in ENDINGS:
         says = f'The ending of "{target.name}" names neither a page nor a picture.'
         raise UnusableInput([Problem("--output", says, f"End it in {', '.join(ENDINGS)}.")], str(target))
-    sheets = [sheet_of(path, read=read, track=track) for path in files]
+    sheets = [sheet_of(path, reading, track=track) for path in files]
     shown = sheets[0] if len(sheets) == 1 else compared(sheets[0], sheets[1])
     shown = _restricted(shown, only) if only else shown
     if target.suffix.lower() == ".html":
@@ -89,39 +90,19 @@ def _beside(files: list[Path]) -> Path:
     return files[0].parent / f"{name}.html"
 
 
-def sheet_of(path: Path, *, read: Callable[[Path], Table] | None = None, track: Track = silently) -> Sheet:
+def sheet_of(path: Path, reading: Reading = OWN, *, track: Track = silently) -> Sheet:
     """Return what there is to show of a document or a table."""
-    if read is None and is_document(path):
+    if not is_table(path, reading):
         return document_sheet(read_document(path), track=track)
-    return table_sheet(_read_table(path, read), path.name)
+    loaded = load(path, reading)
+    return table_sheet(loaded.table, path.name, check_loaded(loaded, str(path)).record())
 
 
-def drawings_of(
-    path: Path, record: Mapping[str, Any], *, read: Callable[[Path], Table] | None = None
-) -> tuple[Drawing, ...]:
+def drawings_of(path: Path, record: Mapping[str, Any], reading: Reading = OWN) -> tuple[Drawing, ...]:
     """Return the drawings of a document or a table that was checked already, given its subject's record."""
-    if read is None and is_document(path):
-        return document_drawings(read_document(path), record)
-    return table_drawings(_read_table(path, read), record)
-
-
-def _read_table(path: Path, read: Callable[[Path], Table] | None) -> Table:
-    try:
-        return (read or format_of(path).read)(path)
-    except OSError as error:
-        says = f"The file can't be read: {error.strerror or error}."
-        raise UnusableInput([Problem("", says, "Check its name and permissions.")], str(path)) from None
-
-
-def is_document(path: Path) -> bool:
-    """Tell whether a file is a potential document, by its ending and, in JSON, by what stands in it."""
-    if path.suffix.lower() != ".json":
-        return path.suffix.lower() == ".toml"
-    try:
-        with path.open(encoding="utf-8", errors="replace") as file:
-            return re.search(r'"schema"\s*:\s*"slopewell/potential/', file.read(4000)) is not None
-    except OSError:
-        return True
+    if is_table(path, reading):
+        return table_drawings(load(path, reading).table, record)
+    return document_drawings(read_document(path), record)
 
 
 def document_sheet(document: Document, *, track: Track = silently) -> Sheet:
@@ -140,22 +121,20 @@ def document_sheet(document: Document, *, track: Track = silently) -> Sheet:
     )
 
 
-def table_sheet(table: Table, file: str) -> Sheet:
-    """Return what there is to show of a table."""
-    subjects = table.report.get("subjects") or [{}]
-    record = subjects[0]
+def table_sheet(table: Table, file: str, record: Mapping[str, Any]) -> Sheet:
+    """Return what there is to show of a table, given its subject's record; empty if not checked."""
     facts = (
         ("File", file),
-        ("SHA-256 of the document", table.document_sha256),
+        ("SHA-256 of the file", str(record.get("sha256", ""))),
+        ("SHA-256 of its document", table.document_sha256),
         ("Purpose", table.purpose.replace("-", " ")),
         ("Physical constants", table.constants),
         ("Table written by", table.writer),
         ("Changed since", "; ".join(table.history)),
         ("Checks that ran", ", ".join(record.get("checked", ()))),
     )
-    return Sheet(
-        table.title or file, table.source, table_drawings(table, record), record, facts, table.document
-    )
+    drawings = table_drawings(table, record)
+    return Sheet(table.title or file, table.source, drawings, record, facts, table.document)
 
 
 def compared(first: Sheet, second: Sheet) -> Sheet:

@@ -133,7 +133,7 @@ def test_findings_stand_at_their_place(elements: Elements) -> None:
 
 
 def test_rows_to_read_out_are_those_of_the_table(table: Table) -> None:
-    (drawn, *_) = numbers(page(table_sheet(table, "beads.json")))["drawings"]
+    (drawn, *_) = numbers(page(table_sheet(table, "beads.json", {})))["drawings"]
     rows = table.interactions[0]
     separation = column(drawn["separation"])
     at = np.searchsorted(rows.separation, separation)
@@ -164,7 +164,7 @@ def test_a_comparison_draws_the_difference(sheet: Sheet) -> None:
 
 
 def test_a_table_that_was_never_checked_says_so(table: Table) -> None:
-    assert "Not checked" in Elements(page(table_sheet(table, "beads.json"))).said
+    assert "Not checked" in Elements(page(table_sheet(table, "beads.json", {}))).said
 
 
 def test_many_rows_make_a_small_page(table: Table) -> None:
@@ -172,7 +172,7 @@ def test_many_rows_make_a_small_page(table: Table) -> None:
     r = np.linspace(0.25, 1.2, 100_001)
     energy, force = (np.interp(r, rows.separation, each) for each in (rows.energy, rows.force))
     long = replace(table, interactions=(replace(rows, separation=r, energy=energy, force=force),))
-    text = page(replace(table_sheet(table, ""), drawings=table_drawings(long, {})))
+    text = page(replace(table_sheet(table, "", {}), drawings=table_drawings(long, {})))
     assert len(text) < 5_000_000 / 55
 
 

@@ -94,7 +94,7 @@ def of_document(browser: webdriver.Chrome, folder: Path, sheet: Sheet) -> webdri
 
 @pytest.fixture
 def of_table(browser: webdriver.Chrome, folder: Path, table: Table) -> webdriver.Chrome:
-    return opened(browser, folder / "table.html", table_sheet(table, "beads.json"))
+    return opened(browser, folder / "table.html", table_sheet(table, "beads.json", {}))
 
 
 def opened(browser: webdriver.Chrome, path: Path, shown: Sheet) -> webdriver.Chrome:
@@ -147,7 +147,7 @@ def test_what_is_read_out_is_said_to_screen_readers(of_table: webdriver.Chrome) 
 def test_pointing_reads_out_the_nearest_row(of_table: webdriver.Chrome, table: Table) -> None:
     plot = of_table.find_element(By.CSS_SELECTOR, "#pair-0 .plot")
     ActionChains(of_table).move_to_element(plot).perform()
-    shown = table_sheet(table, "").drawings[0]
+    shown = table_sheet(table, "", {}).drawings[0]
     middle = sum(shown.view.separation) / 2
     step = table.interactions[0].separation[1] - table.interactions[0].separation[0]
     assert float(readout(of_table)[0].split()[0]) == pytest.approx(middle, abs=2 * step)

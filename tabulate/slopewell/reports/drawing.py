@@ -173,6 +173,7 @@ def rows_drawing(
     rows: Rows, units: UnitSystem, record: Mapping[str, Any], stated: Stated | None = None
 ) -> Drawing:
     """Return the drawing of the rows of one interaction."""
+    rows = _in_order(rows)
     size = float(units.length.factor)
     landmarks = landmarks_in(record, rows.name, units)
     cutoff = None if stated is None or stated.cutoff is None else stated.cutoff / size
@@ -202,6 +203,16 @@ def rows_drawing(
         rows=rows.separation.size,
     )
     return _annotated(drawing, record)
+
+
+def _in_order(rows: Rows) -> Rows:
+    """Return rows by ascending separation, each once: what is wrong with others is for the checks to say."""
+    kept = np.unique(np.where(np.isfinite(rows.separation), rows.separation, np.inf), return_index=True)[1]
+    kept = kept[np.isfinite(rows.separation[kept])]
+    if np.array_equal(kept, np.arange(rows.separation.size)):
+        return rows
+    columns = {name: column[kept] for name, column in rows.columns().items()}
+    return replace(rows, **columns)
 
 
 def _reader(rows: Rows) -> Reader:

@@ -39,6 +39,8 @@ def view_of(
     reach : float or None
         The cutoff.
     """
+    if r.size < 2:
+        return _point_view(r)
     end = float(r[-1]) if reach is None else min(float(r[-1]), reach + 0.04 * (reach - float(r[0])))
     inside = r <= end * (1 + 1e-12)
     lead = energy if energy is not None else force
@@ -52,6 +54,12 @@ def view_of(
         force_limits = None if force is None else _range(r[inside], force[inside], anchor, headroom=0.8)
         return View((start, end), energy_limits, force_limits)
     return View((start, end), None, None)
+
+
+def _point_view(r: Array) -> View:
+    """Return limits around a single row, or around none."""
+    place = float(r[0]) if r.size else 0.0
+    return View((place - 0.5, place + 0.5), (-1.0, 1.0), (-1.0, 1.0))
 
 
 def _anchor(r: Array, values: Array, bottom: float | None) -> float:

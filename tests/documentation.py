@@ -5,9 +5,12 @@
 
 from __future__ import annotations
 
+import contextlib
+import io
 import re
-from collections.abc import Iterator
+from collections.abc import Callable, Iterator
 from dataclasses import dataclass
+from functools import partial
 from importlib import import_module
 from importlib.util import find_spec
 from pathlib import Path
@@ -15,6 +18,7 @@ from typing import Any
 
 from layers import LAYERS
 from slopewell.checks import Check, register
+from slopewell.cli import main
 from slopewell.schemas import NAMES, schema
 
 ROOT = Path(__file__).parent.parent
@@ -148,8 +152,17 @@ def schema_tables() -> str:
     return "\n\n".join(parts)
 
 
-GENERATED = {
-    "README.md": {"checks": checks},
+def shown(file: str) -> str:
+    """What the terminal shows of a check of a sample."""
+    printed = io.StringIO()
+    with contextlib.chdir(ROOT), contextlib.redirect_stdout(printed):
+        main(["check", file])
+    return f"```text\n{printed.getvalue()}```"
+
+
+FAULTY = ("samples/faulty/first-row-energy.toml", "samples/faulty/energy-plus-length.toml")
+GENERATED: dict[str, dict[str, Callable[[], str]]] = {
+    "README.md": {"checks": checks} | {f"check {file}": partial(shown, file) for file in FAULTY},
     "DEVELOPERS.md": {"layers": layers},
     "schemas/README.md": {"fields": schema_tables},
 }

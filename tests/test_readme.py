@@ -13,22 +13,12 @@ from slopewell.cli import main, parser
 from slopewell.document import Source, understand
 
 README = (ROOT / "README.md").read_text(encoding="utf-8")
-SHOWN = re.findall(r"```text\n(samples/faulty/\S+\.toml)(.*?)```", README, re.DOTALL)
 
 
 @pytest.mark.parametrize("file", GENERATED)
 def test_generated_parts_are_up_to_date(file: str) -> None:
     text = (ROOT / file).read_text(encoding="utf-8")
     assert text == generated(text, file), "run python tests/documentation.py"
-
-
-@pytest.mark.parametrize(("file", "rest"), SHOWN, ids=[file for file, _ in SHOWN])
-def test_the_output_that_is_shown_is_real(
-    file: str, rest: str, monkeypatch: pytest.MonkeyPatch, capsys: pytest.CaptureFixture[str]
-) -> None:
-    monkeypatch.chdir(ROOT)
-    main(["check", file])
-    assert capsys.readouterr().out == file + rest
 
 
 def test_the_output_of_units_is_real(capsys: pytest.CaptureFixture[str]) -> None:

@@ -209,6 +209,46 @@ def _sheet(options: argparse.Namespace) -> int:
     return FOUND if shown.record.get("verdict") in failing else GOOD
 
 
+def _study_options(command: argparse.ArgumentParser) -> None:
+    """Add what predict and trial have in common."""
+    command.add_argument("file", metavar="FILE", help="potential document or table")
+    _foreign_options(command)
+    command.add_argument("--document", metavar="FILE", help="document behind a table that does not store it")
+    command.add_argument("--mass", metavar="NAME=MASS", action="append", default=[], help='"Ar=39.95 dalton"')
+    command.add_argument("--density", metavar="DENSITY", help='number density, "0.021 angstrom^-3"')
+    command.add_argument("--json", action="store_true", help="print only the result, as JSON")
+
+
+def _predict_options(command: argparse.ArgumentParser) -> None:
+    _study_options(command)
+    command.add_argument("--temperatures", metavar="LIST", help="in kelvin: 150:700:50 or 100,300")
+    command.add_argument("--structure", metavar="NAME", action="append", default=[], help="only this crystal")
+    command.set_defaults(command=_predict)
+
+
+def _predict(options: argparse.Namespace) -> int:
+    from .forecasting import predict, read_density, read_masses, read_temperatures
+
+    forecast = predict(
+        options.file,
+        temperatures=read_temperatures(options.temperatures) if options.temperatures else None,
+        number_density=read_density(options.density) if options.density else None,
+        structures=options.structure,
+        reading=_foreign_reading(options),
+        document=options.document,
+        masses=read_masses(options.mass),
+    )
+    record = forecast.record()
+    if options.json:
+        _print_json(record)
+        return GOOD
+    from .reports.forecast import forecast_lines
+
+    for line in forecast_lines(forecast.studied.title or options.file, record["predictions"], forecast.notes):
+        print(line)
+    return GOOD
+
+
 def _completion_options(command: argparse.ArgumentParser) -> None:
     command.add_argument("shell", metavar="SHELL", help="bash, fish or zsh")
     command.set_defaults(command=_completion)
@@ -244,6 +284,7 @@ COMMANDS: tuple[tuple[str, str, Callable[[argparse.ArgumentParser], None]], ...]
     ("tabulate", "check a document, then write every output that it names", _tabulate_options),
     ("plan", "how many rows each grid and interpolation rule needs", _plan_options),
     ("sheet", "write a page or a picture of curves, landmarks and findings", _sheet_options),
+    ("predict", "crystals, gas, vibrations: what the curve and the table give", _predict_options),
     ("forms", "list the catalogue of published forms, or show one", _forms_options),
     ("units", "convert a quantity to another unit", _units_options),
     ("schema", "print a published schema", _schema_options),

@@ -15,7 +15,7 @@ from .quadrature import panels
 
 Array = NDArray[np.float64]
 ORDERS = ((1, 1), (2, 2))
-ENERGIES = 140
+ENERGIES = 110
 """Collision energies at which cross-sections are computed."""
 ANGLES = panels(np.linspace(0.0, pi / 2, 5), 14)
 """Nodes and weights of the integral over one encounter."""

@@ -20,7 +20,7 @@ from .structures import STRUCTURES, Structure
 
 Array = NDArray[np.float64]
 K_E = float(COULOMB)
-SCAN = 120
+SCAN = 50
 """Lattice constants that are tried before the best one is refined."""
 COMPRESSIONS = (0.9, 0.95, 1.05)
 """Volumes, over that of lowest energy, at which the pressure is given."""

@@ -44,6 +44,7 @@ class Lattice:
     def __init__(self, structure: Structure, curves: Curves) -> None:  # noqa: D107 -- the class says it
         self.structure, self.curves = structure, curves
         self.nearest = structure.nearest
+        self._hessians: dict[float, Hessian] = {}
 
     def radius(self, a: float) -> float:
         """Return how far neighbours are summed, in lattice constants, in steps to make few lists."""
@@ -60,9 +61,9 @@ class Lattice:
         ----------
         a : float
         quick : bool
-            Whether closely spaced points of the curves will do.
+            Only the energy, from closely spaced points of the curves.
         """
-        totals = np.zeros(3)
+        totals, order = np.zeros(3), 0 if quick else 2
         for first, second, distances, counts in shells(self.structure, self.radius(a)):
             curve = self.curves[first, second]
             curve = curve.sampled if quick else curve
@@ -70,17 +71,19 @@ class Lattice:
             weight = 0.5 * counts
             weight = weight * self.weights(curve, r, a)
             kept = r <= curve.reach
-            values = curve.all(r[kept], 2)
-            totals += [np.sum(weight[kept] * r[kept] ** k * values[k]) for k in range(3)]
+            values = curve.all(r[kept], order)
+            totals[: order + 1] += [np.sum(weight[kept] * r[kept] ** k * values[k]) for k in range(order + 1)]
             if self._is_integrated(curve, a):
-                x, values, measure = self._beyond(curve, a)
+                x, values, measure = self._beyond(curve, a, order)
                 kinds = [kind for kind, _ in self.structure.atoms]
                 ordered = kinds.count(first) * kinds.count(second) * (1 if first == second else 2)
                 density = ordered / (self.structure.volume * a**3)
-                totals += [0.5 * density * np.sum(measure * x**k * values[k]) for k in range(3)]
+                totals[: order + 1] += [
+                    0.5 * density * np.sum(measure * x**k * values[k]) for k in range(order + 1)
+                ]
         return totals
 
-    def _beyond(self, curve: EnergyCurve, a: float) -> tuple[Array, Array, Array]:
+    def _beyond(self, curve: EnergyCurve, a: float, order: int = 2) -> tuple[Array, Array, Array]:
         """Return nodes, values there, and 4πr²·weight of what is integrated and not summed."""
         unit = self.nearest * a
         near = np.linspace(MIDDLE - 6 * WIDTH, FARTHEST, 37) * unit
@@ -90,7 +93,7 @@ class Lattice:
         else:
             far, far_weight = panels(np.linspace(near[-1], curve.reach, 60))
         r, weight = np.concatenate([r, far]), np.concatenate([weight, far_weight])
-        return r, curve.all(r, 2), 4 * pi * r**2 * weight * (1 - handover(r / unit))
+        return r, curve.all(r, order), 4 * pi * r**2 * weight * (1 - handover(r / unit))
 
     def within(
         self, i: int, j: int, vectors: Array, a: float
@@ -114,6 +117,11 @@ class Lattice:
 
     def hessian(self, a: float) -> Hessian:
         """Return the second derivatives of a cell's energy in strains and displacements."""
+        if a not in self._hessians:
+            self._hessians[a] = self._hessian(a)
+        return self._hessians[a]
+
+    def _hessian(self, a: float) -> Hessian:
         result = Hessian.zero(len(self.structure.atoms))
         for i, j, vectors in neighbours(self.structure, self.radius(a)):
             curve, kept, r = self.within(i, j, vectors, a)

@@ -1,0 +1,138 @@
+"""Predictions for people: one screen, curve and table side by side."""
+
+from __future__ import annotations
+
+from collections.abc import Iterable, Iterator, Sequence
+from typing import Any
+
+Row = dict[str, Any]
+PER_TEMPERATURE = (
+    "second-virial",
+    "second-virial-quantum",
+    "collision-integral 1,1",
+    "collision-integral 2,2",
+    "viscosity",
+    "diffusion-coefficient",
+)
+HEADS = ("second virial", "table-curve", "with quantum", "omega(1,1)", "omega(2,2)", "viscosity", "diffusion")
+CRYSTAL = (
+    ("lattice-constant", "constant"),
+    ("cohesive-energy", "cohesion"),
+    ("bulk-modulus", "bulk"),
+    ("elastic-constant C11", "C11"),
+    ("elastic-constant C12", "C12"),
+    ("elastic-constant C44", "C44"),
+    ("einstein-frequency", "Einstein"),
+    ("zone-boundary-frequency", "zone edge"),
+)
+FEW_LEVELS = 4
+MATRIX = {name.split()[0] for name in (*PER_TEMPERATURE, *(name for name, _ in CRYSTAL))}
+HIDDEN = {"pressure", "nearest-distance", "smallest-stiffness"}
+
+
+def forecast_lines(title: str, rows: Sequence[Row], notes: Iterable[str]) -> Iterator[str]:
+    """Yield the lines of a forecast.
+
+    Parameters
+    ----------
+    title : str
+    rows : sequence of mapping
+        As in its JSON.
+    notes : iterable of str
+    """
+    yield title
+    for subject in dict.fromkeys(row["subject"] for row in rows):
+        own = [row for row in rows if row["subject"] == subject]
+        yield f"\n  {subject}"
+        yield from _singles([row for row in own if "structure" not in row])
+        yield from _crystals([row for row in own if "structure" in row])
+        yield from _gas([row for row in own if "temperature" in row])
+    if notes:
+        yield ""
+        yield from (f"  - {note}" for note in notes)
+
+
+def number(value: float | None, digits: int = 6) -> str:
+    """Return a number for a column, a dash for none."""
+    return "-" if value is None else f"{value:.{digits}g}"
+
+
+def _singles(rows: Sequence[Row]) -> Iterator[str]:
+    """Yield one line a quantity: curve, table, difference, what the source states."""
+    levels = [row for row in rows if row["quantity"] == "vibrational-level"]
+    shown = [row for row in rows if row["quantity"] not in MATRIX and row.get("level", 0) < FEW_LEVELS]
+    if not shown:
+        return
+    yield f"    {'':<27}{'curve':>13}{'table':>13}{'difference':>13}{'expected':>11}  unit"
+    for row in shown:
+        curve, table = row["curve"], row["table"]
+        difference = None if curve is None or table is None else table - curve
+        yield (
+            f"    {_label(row):<27}{number(curve):>13}{number(table):>13}{number(difference, 2):>13}"
+            f"{number(row['expected']):>11}  {row['unit']}"
+        )
+        if row is shown[-1]:
+            continue
+        if row.get("level") == FEW_LEVELS - 1 and len(levels) > FEW_LEVELS:
+            yield f"    … {len(levels)} levels in all"
+
+
+def _label(row: Row) -> str:
+    words = str(row["quantity"]).replace("-", " ")
+    if "level" in row:
+        words = f"level {row['level']}"
+    return f"{words} {row.get('side', '')}".strip()
+
+
+def _value(rows: Sequence[Row], name: str, column: str) -> float | None:
+    quantity, _, key = name.partition(" ")
+    for row in rows:
+        if row["quantity"] == quantity and key in (row.get("component", ""), row.get("order", "")):
+            found: float | None = row[column]
+            return found
+    return None
+
+
+def _both(rows: Sequence[Row], names: Sequence[str]) -> Iterator[tuple[str, list[str]]]:
+    """Yield the curve's values and what the table differs by; the table's own where there is no curve."""
+    curves, tables = ([_value(rows, name, column) for name in names] for column in ("curve", "table"))
+    if any(value is not None for value in curves):
+        yield "curve", [number(value) for value in curves]
+        differences = [None if a is None or b is None else b - a for a, b in zip(curves, tables, strict=True)]
+        if any(value is not None for value in differences):
+            yield "table-curve", [f"{value:+.1e}" if value is not None else "-" for value in differences]
+    else:
+        yield "table", [number(value) for value in tables]
+
+
+def _crystals(rows: Sequence[Row]) -> Iterator[str]:
+    if not rows:
+        return
+    units = {row["quantity"]: row["unit"] for row in rows}
+    yield ""
+    yield "    " + f"{'crystal':<18}" + "".join(f"{head:>11}" for _, head in CRYSTAL) + "  shear"
+    yield "    " + f"{'':<18}" + "".join(f"{units.get(name.split()[0], ''):>11}" for name, _ in CRYSTAL)
+    for structure in dict.fromkeys(row["structure"] for row in rows):
+        own = [row for row in rows if row["structure"] == structure]
+        for line, (kind, cells) in enumerate(_both(own, [name for name, _ in CRYSTAL])):
+            weakest = _value(own, "smallest-stiffness", "curve") or _value(own, "smallest-stiffness", "table")
+            verdict = ("stands" if weakest and weakest > 0 else "gives way") if line == 0 else ""
+            head = structure if line == 0 else f"  {kind}"
+            yield f"    {head:<18}" + "".join(f"{cell:>11}" for cell in cells) + f"  {verdict}".rstrip()
+
+
+def _gas(rows: Sequence[Row]) -> Iterator[str]:
+    if not rows:
+        return
+    units = {row["quantity"]: row["unit"].removeprefix("1") for row in rows}
+    names = [units.get(name.split()[0], "") for name in PER_TEMPERATURE]
+    yield ""
+    yield f"    {'temperature':<12}" + "".join(f"{head:>14}" for head in HEADS)
+    yield f"    {'K':<12}" + "".join(f"{name:>14}" for name in (names[0], *names))
+    for temperature in dict.fromkeys(row["temperature"] for row in rows):
+        own = [row for row in rows if row["temperature"] == temperature]
+        (_, cells), *more = list(_both(own, PER_TEMPERATURE))
+        difference = more[0][1][0] if more else "-"
+        yield f"    {temperature:<12g}" + "".join(
+            f"{cell:>14}" for cell in (cells[0], difference, *cells[1:])
+        )

@@ -5,6 +5,7 @@ from __future__ import annotations
 from fractions import Fraction
 from pathlib import Path
 
+from slopewell.checks import PotentialFacts, potential_facts
 from slopewell.document import Document, read_document
 from slopewell.formula import bind, parse
 from slopewell.formula.branches import resolve
@@ -71,3 +72,9 @@ def problems(document: str, folder: Path) -> list[tuple[str, str]]:
     except UnusableInput as error:
         return [(problem.at, problem.says) for problem in error.problems]
     return []
+
+
+def facts(document: str, folder: Path) -> PotentialFacts:
+    """What the checks look at, of a document's first interaction."""
+    understood = read(document, folder)
+    return potential_facts(understood, understood.interactions[0])

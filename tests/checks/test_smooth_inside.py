@@ -63,7 +63,8 @@ def test_a_kink_of_abs_is_found(tmp_path: Path) -> None:
 
 def test_the_known_jump_of_a_published_form_is_reported(tmp_path: Path) -> None:
     # HFD-B damps its dispersion up to D·r_m only, where the stiffness jumps. Argon: R. A. Aziz and
-    # M. J. Slaman, Mol. Phys. 58, 679 (1986); the jump of 2.6228 K/Å² at 5.10884 Å is computed from its parameters.
+    # M. J. Slaman, Mol. Phys. 58, 679 (1986); the jump of 2.6228 K/Å² at 5.10884 Å is
+    # computed from its parameters.
     values = {
         "epsilon": '"143.224 K"',
         "r_m": '"3.7565 angstrom"',

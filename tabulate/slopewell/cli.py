@@ -10,6 +10,8 @@ from collections.abc import Callable, Iterable, Iterator, Sequence
 from pathlib import Path
 from typing import TYPE_CHECKING, Any
 
+from .table_commands import compare_options, convert_options, foreign_options, foreign_reading
+
 if TYPE_CHECKING:
     from rich.console import Console
 
@@ -71,7 +73,7 @@ def _version() -> str:
 
 def _check_options(command: argparse.ArgumentParser) -> None:
     command.add_argument("files", nargs="+", metavar="FILE", help="potential document or table")
-    _foreign_options(command)
+    foreign_options(command)
     command.add_argument("--json", action="store_true", help="print only the report, as JSON")
     command.add_argument("--strict", action="store_true", help="let a warning count as an error")
     command.add_argument("--curve", action="store_true", help="draw each curve in the terminal")
@@ -80,31 +82,10 @@ def _check_options(command: argparse.ArgumentParser) -> None:
     command.set_defaults(command=_check)
 
 
-def _foreign_options(command: argparse.ArgumentParser) -> None:
-    """Add what describes a table that slopewell did not write."""
-    command.add_argument("--columns", metavar="NAMES", default="", help="such as row,separation,energy,force")
-    command.add_argument("--units", metavar="ENERGY,LENGTH", default="", help="units of the table's columns")
-    command.add_argument("--layout", metavar="FILE", default="", help="layout of the table, instead of columns")
-    command.add_argument("--block", metavar="N", type=int, help="which block of rows to read, from 1")
-    command.add_argument(
-        "--purpose",
-        choices=("sampling", "dynamics", "lattice-dynamics"),
-        default="",
-        help="what the table is for",
-    )
-
-
-def _foreign_reading(options: argparse.Namespace) -> Reading:
-    from .tables import Reading
-
-    names = tuple(name.strip() for name in options.columns.split(",") if name.strip())
-    return Reading(names, options.units, options.layout, options.block, options.purpose)
-
-
 def _check(options: argparse.Namespace) -> int:
     from .workflow import check
 
-    reading = _foreign_reading(options)
+    reading = foreign_reading(options)
     report = check(options.files, reading=reading, every_row=options.every_row, track=_track)
     if options.junit:
         from .files.atomic import write_text
@@ -195,7 +176,7 @@ def _sheet_options(command: argparse.ArgumentParser) -> None:
     command.add_argument(
         "--interaction", metavar="NAME", action="append", default=[], help="show only this one, such as W-P"
     )
-    _foreign_options(command)
+    foreign_options(command)
     command.add_argument("--strict", action="store_true", help="let a warning count as an error")
     command.set_defaults(command=_sheet)
 
@@ -203,7 +184,7 @@ def _sheet_options(command: argparse.ArgumentParser) -> None:
 def _sheet(options: argparse.Namespace) -> int:
     from .sheets import sheet
 
-    path, shown = sheet(options.files, options.output, only=options.interaction, reading=_foreign_reading(options), track=_track)
+    path, shown = sheet(options.files, options.output, only=options.interaction, reading=foreign_reading(options), track=_track)
     print(f"wrote {path}")
     failing = {"fail", "warn"} if options.strict else {"fail"}
     return FOUND if shown.record.get("verdict") in failing else GOOD
@@ -212,7 +193,7 @@ def _sheet(options: argparse.Namespace) -> int:
 def _study_options(command: argparse.ArgumentParser) -> None:
     """Add what predict and trial have in common."""
     command.add_argument("file", metavar="FILE", help="potential document or table")
-    _foreign_options(command)
+    foreign_options(command)
     command.add_argument("--document", metavar="FILE", help="document behind a table that does not store it")
     command.add_argument("--mass", metavar="NAME=MASS", action="append", default=[], help='"Ar=39.95 dalton"')
     command.add_argument("--density", metavar="DENSITY", help='number density, "0.021 angstrom^-3"')
@@ -234,7 +215,7 @@ def _predict(options: argparse.Namespace) -> int:
         temperatures=read_temperatures(options.temperatures) if options.temperatures else None,
         number_density=read_density(options.density) if options.density else None,
         structures=options.structure,
-        reading=_foreign_reading(options),
+        reading=foreign_reading(options),
         document=options.document,
         masses=read_masses(options.mass),
     )
@@ -247,6 +228,48 @@ def _predict(options: argparse.Namespace) -> int:
     for line in forecast_lines(forecast.studied.title or options.file, record["predictions"], forecast.notes):
         print(line)
     return GOOD
+
+
+def _trial_options(command: argparse.ArgumentParser) -> None:
+    _study_options(command)
+    command.add_argument("--length", metavar="TIME", default="1 ns", help='of the run to judge, such as "100 ns"')
+    command.add_argument("--temperature", metavar="T", help='such as "300 K" (default: that of the document)')
+    command.add_argument("--time-step", metavar="TIME", help='such as "2 fs"')
+    command.add_argument("--interpolation", metavar="RULE", default="", help="how the code reads between rows")
+    command.add_argument("--particles", metavar="N", type=int, help="how many")
+    command.add_argument("--steps", metavar="N", type=int, help="of each run")
+    command.add_argument("--seeds", metavar="N", type=int, default=2, help="how many runs (default: 2)")
+    command.set_defaults(command=_trial)
+
+
+def _trial(options: argparse.Namespace) -> int:
+    from .forecasting import read_density, read_masses
+    from .trials import read_time, trial
+    from .units import temperature
+
+    done = trial(
+        options.file,
+        reading=_foreign_reading(options),
+        document=options.document,
+        masses=read_masses(options.mass),
+        rule=options.interpolation,
+        temperature=float(temperature(options.temperature)) if options.temperature else None,
+        number_density=read_density(options.density) if options.density else None,
+        step=read_time(options.time_step, "--time-step") if options.time_step else None,
+        particles=options.particles,
+        steps=options.steps,
+        seeds=options.seeds,
+        length=read_time(options.length, "--length") / 1e6,
+        track=_track,
+    )
+    if options.json:
+        _print_json(done.record())
+    else:
+        from .reports.forecast import trial_lines
+
+        for line in trial_lines(done.studied.title or options.file, done.record()):
+            print(line)
+    return FOUND if done.verdict == "fail" else GOOD
 
 
 def _completion_options(command: argparse.ArgumentParser) -> None:
@@ -280,8 +303,10 @@ def _schema(options: argparse.Namespace) -> int:
 
 
 COMMANDS: tuple[tuple[str, str, Callable[[argparse.ArgumentParser], None]], ...] = (
-    ("check", "check potential documents: findings and landmarks", _check_options),
+    ("check", "check potential documents and tables: findings and landmarks", _check_options),
     ("tabulate", "check a document, then write every output that it names", _tabulate_options),
+    ("convert", "carry a table over to other units, rows, formats and layouts, or mend it", convert_options),
+    ("compare", "how far two tables, or a table and a document, lie apart", compare_options),
     ("plan", "how many rows each grid and interpolation rule needs", _plan_options),
     ("sheet", "write a page or a picture of curves, landmarks and findings", _sheet_options),
     ("predict", "crystals, gas, vibrations: what the curve and the table give", _predict_options),

@@ -156,7 +156,7 @@ def is_table(path: str | Path, reading: Reading) -> bool:
 
 def _foreign(path: Path, reading: Reading) -> tuple[Table, dict[str, Array]]:
     names, spacing, interpolation = reading.columns, "", ""
-    units = _units(reading.units) if reading.units else None
+    units = parse_units(reading.units) if reading.units else None
     if reading.layout:
         described = read_layout(Path(reading.layout))
         names, spacing, interpolation = described.quantities, described.spacing, described.interpolation
@@ -173,7 +173,8 @@ def _foreign(path: Path, reading: Reading) -> tuple[Table, dict[str, Array]]:
     return Table((rows,), units, purpose=reading.purpose), stored
 
 
-def _units(text: str) -> UnitSystem:
+def parse_units(text: str) -> UnitSystem:
+    """Return the units that a text such as "kJ/mol,nm" names."""
     energy, comma, length = text.partition(",")
     if not comma:
         raise UnusableInput([Problem("--units", f'"{text}" is not energy,length.', "Write it like eV,angstrom.")])

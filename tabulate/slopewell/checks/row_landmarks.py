@@ -8,6 +8,8 @@ import numpy as np
 from numpy.polynomial import Chebyshev
 from numpy.typing import NDArray
 
+from .slopes import Slopes
+
 Array = NDArray[np.float64]
 
 REACH = 0.04
@@ -38,12 +40,16 @@ class RowLandmarks:
     turns: tuple[Turn, ...]
 
 
-def row_landmarks(separation: Array, energy: Array, rounding: Array | None = None) -> RowLandmarks:
+def row_landmarks(
+    separation: Array, energy: Array, slopes: Slopes, rounding: Array | None = None
+) -> RowLandmarks:
     """Find the landmarks of rows.
 
     Parameters
     ----------
     separation, energy : (n,) array
+    slopes : Slopes
+        Of the energies.
     rounding : (n,) array, optional
         Largest rounding error of each energy: smaller turns are noise.
     """
@@ -57,12 +63,16 @@ def row_landmarks(separation: Array, energy: Array, rounding: Array | None = Non
         place = _turning_point(curve, float(separation[bottom]))
         depth = -float(curve(place))
         stiffness = float(curve.deriv(2)(place))
+        rise = float(max(energy[max(bottom - 1, 0)], energy[min(bottom + 1, energy.size - 1)]) - energy[bottom])
+        if abs(depth + float(energy[bottom])) > rise:
+            # A fit across a kink or a step: the row itself is the better landmark, and no curvature is known.
+            place, depth, stiffness = float(separation[bottom]), -float(energy[bottom]), None
     return RowLandmarks(
         equilibrium_separation=place,
         well_depth=depth if depth is not None and depth > 0 else None,
         stiffness=stiffness,
         zero_crossing=_zero_crossing(separation, energy, bottom),
-        largest_attraction=_largest_attraction(separation, energy, noise),
+        largest_attraction=_largest_attraction(separation, slopes),
         stationary_points=len(found),
         turns=tuple(found),
     )
@@ -131,18 +141,17 @@ def _zero_crossing(separation: Array, energy: Array, bottom: int | None) -> floa
     return (low + high) / 2
 
 
-def _largest_attraction(separation: Array, energy: Array, noise: Array) -> tuple[float, float] | None:
-    stride = max(energy.size // 2000, 1)
-    r, u = separation[::stride], energy[::stride]
-    if r.size < 3:
+def _largest_attraction(separation: Array, slopes: Slopes) -> tuple[float, float] | None:
+    sure = slopes.values - slopes.band
+    steepest = int(np.argmax(sure))
+    if not sure[steepest] > 0:
         return None
-    slope = np.diff(u) / np.diff(r)
-    doubt = (noise[::stride][1:] + noise[::stride][:-1]) / np.diff(r)
-    steepest = int(np.argmax(slope - doubt))
-    if slope[steepest] <= 2 * doubt[steepest]:
-        return None
-    curve = local(separation, energy, steepest * stride)
-    rate = curve.deriv()
-    places = np.linspace(max(float(r[max(steepest - 2, 0)]), curve.domain[0]), min(float(r[min(steepest + 3, r.size - 1)]), curve.domain[1]), 401)
-    best = int(np.argmax(rate(places)))
-    return float(places[best]), -float(rate(places[best]))
+    place, slope = float(separation[steepest]), float(slopes.values[steepest])
+    curve = local(separation, slopes.values, steepest)
+    low, high = (float(separation[max(min(steepest + side, separation.size - 1), 0)]) for side in (-3, 3))
+    places = np.linspace(max(low, curve.domain[0]), min(high, curve.domain[1]), 401)
+    best = int(np.argmax(curve(places)))
+    # A fit across a kink or a step overshoots; the row itself is then the better landmark.
+    if abs(float(curve(place)) - slope) > 0.01 * slope or float(curve(places[best])) > 1.05 * slope:
+        return place, -slope
+    return float(places[best]), -float(curve(places[best]))

@@ -15,12 +15,14 @@ from ..units.constants import BOLTZMANN
 from .digits import EPSILON, digits, separation_rounding
 from .mistakes import Evidence
 from .row_landmarks import RowLandmarks, row_landmarks
-from .slopes import slopes
+from .slopes import Slopes, slopes
 
 Array = NDArray[np.float64]
 
 TERMS = 8.0
 """Units in the last place of the largest term that a clean number may be off by."""
+NEGLIGIBLE = 3e-8
+"""Part of the largest term of a force below which a difference is no mistake of the kinds that are looked for."""
 ROOM_TEMPERATURE = 300
 """In kelvin: the energy scale of a table without a well."""
 
@@ -68,13 +70,17 @@ class TableFacts:
         rows = self.rows
         if rows.energy is None or rows.force is None:
             return None
-        return rows_evidence(rows.separation, rows.energy, rows.force, self.units, self.rounding)
+        return _evidence(rows.separation, rows.energy, rows.force, self.units, self.rounding, self.slopes)
+
+    @cached_property
+    def slopes(self) -> Slopes:
+        """Slopes of the energies, with a band around each."""
+        return _slopes(self.rows.separation, self.energy, self.rounding)
 
     @cached_property
     def landmarks(self) -> RowLandmarks:
         """Landmarks of the curve that the rows stand for."""
-        rounding = self.rounding.get("energy")
-        return row_landmarks(self.rows.separation, self.energy, rounding)
+        return row_landmarks(self.rows.separation, self.energy, self.slopes, self.rounding.get("energy"))
 
     @cached_property
     def energy_scale(self) -> float:
@@ -96,26 +102,40 @@ def rows_evidence(
     rounding : mapping, optional
         Largest rounding error of each number by column; by default as the digits of the columns show.
     """
-    known = dict(rounding or {})
-    own = known.get("separation", separation_rounding(separation))
-    of_energy = known.get("energy", digits(energy).rounding(energy))
-    of_force = known.get("force", digits(force).rounding(force))
-    with np.errstate(all="ignore"):
-        steep, bend = _size_of_slope(separation, energy), _size_of_bend(separation, energy)
-        largest = np.abs(energy) + steep * separation + bend * separation**2
-        found = slopes(separation, energy, of_energy + TERMS * EPSILON * largest, own)
-        band = found.band + bend * own + TERMS * EPSILON * (steep + bend * separation)
-    turned = {"separation": own, "energy": of_force, "force": of_energy}
+    known = {
+        "separation": separation_rounding(separation),
+        "energy": digits(energy).rounding(energy),
+        "force": digits(force).rounding(force),
+    } | dict(rounding or {})
+    return _evidence(separation, energy, force, units, known, _slopes(separation, energy, known))
+
+
+def _evidence(
+    separation: Array, energy: Array, force: Array, units: UnitSystem, rounding: Mapping[str, Array], found: Slopes
+) -> Evidence:
+    turned = {"separation": rounding["separation"], "energy": rounding["force"], "force": rounding["energy"]}
     return Evidence(
         separation=separation,
         energy=energy,
         force=force,
         expected=0.0 - found.values,
-        band=np.where(np.isfinite(band), band, np.inf),
-        rounding=of_force,
+        band=found.band,
+        rounding=rounding["force"],
         units=units,
         exchanged=lambda: rows_evidence(separation, force, energy, units, turned),
     )
+
+
+def _slopes(separation: Array, energy: Array, rounding: Mapping[str, Array]) -> Slopes:
+    """Return slopes of rows, their band widened by what the rounding of a separation does to the slope there."""
+    own = rounding["separation"]
+    with np.errstate(all="ignore"):
+        steep, bend = _size_of_slope(separation, energy), _size_of_bend(separation, energy)
+        largest = np.abs(energy) + steep * separation + bend * separation**2
+        noise = rounding["energy"] if "energy" in rounding else np.zeros_like(energy)
+        found = slopes(separation, energy, noise + TERMS * EPSILON * largest, own)
+        band = found.band + bend * own + NEGLIGIBLE * (steep + bend * separation)
+    return Slopes(found.values, np.where(np.isfinite(band), band, np.inf))
 
 
 def integral(separation: Array, force: Array) -> Array:

@@ -1,7 +1,7 @@
 """Name the mistake behind forces that are not minus the slope of their energies.
 
 A mistake is one function from evidence to explanations. Each predicts the forces that it would have made;
-the one whose predictions meet the stated forces is named. To add one, write its function and add a line to
+the one whose predictions meet the stated forces is named. To add one, write its function and how to undo it, and add a line to
 ``MISTAKES``.
 """
 
@@ -12,10 +12,11 @@ from dataclasses import dataclass
 
 import numpy as np
 
-from . import columns, factors, rows, switching
+from . import columns, factors, mending, rows, switching
 from .evidence import Evidence, Explanation, distance
+from .mending import Columns, Mend
 
-__all__ = ["MISTAKES", "Diagnosis", "Evidence", "Explanation", "Mistake", "diagnose"]
+__all__ = ["MISTAKES", "Columns", "Diagnosis", "Evidence", "Explanation", "Mistake", "diagnose"]
 
 REMAINING = 0.02
 """Part of the wrong rows that an explanation may leave unexplained."""
@@ -33,24 +34,27 @@ class Mistake:
         What findings call it.
     explain : callable
         From evidence to the explanations in which this mistake was made.
+    mend : callable
+        Undoes it.
     """
 
     name: str
     explain: Callable[[Evidence], Iterator[Explanation]]
+    mend: Mend
 
 
 MISTAKES = (
-    Mistake("force-sign-flipped", factors.sign),
-    Mistake("counted-twice", factors.counted_twice),
-    Mistake("force-in-other-units", factors.other_units),
-    Mistake("slope-per-squared-separation", factors.slope_per_squared),
-    Mistake("force-divided-by-separation", factors.divided_by_separation),
-    Mistake("virial-instead-of-force", factors.virial),
-    Mistake("columns-exchanged", columns.exchanged),
-    Mistake("constant-force-offset", columns.constant_offset),
-    Mistake("rows-offset", rows.offset),
-    Mistake("switch-slope-missing", switching.slope_missing),
-    Mistake("rows-corrupted", rows.corrupted),
+    Mistake("force-sign-flipped", factors.sign, mending.divide),
+    Mistake("counted-twice", factors.counted_twice, mending.divide),
+    Mistake("force-in-other-units", factors.other_units, mending.divide),
+    Mistake("slope-per-squared-separation", factors.slope_per_squared, mending.divide),
+    Mistake("force-divided-by-separation", factors.divided_by_separation, mending.divide),
+    Mistake("virial-instead-of-force", factors.virial, mending.divide),
+    Mistake("columns-exchanged", columns.exchanged, mending.exchange),
+    Mistake("constant-force-offset", columns.constant_offset, mending.subtract),
+    Mistake("rows-offset", rows.offset, mending.shift),
+    Mistake("switch-slope-missing", switching.slope_missing, mending.from_slope),
+    Mistake("rows-corrupted", rows.corrupted, mending.interpolate),
 )
 """The mistakes that are known, the plainest first."""
 

@@ -43,13 +43,14 @@ def constant_offset(evidence: Evidence) -> Iterator[Explanation]:
     offset = weighted_median((evidence.force - evidence.expected)[chosen], weights)
     if not offset:
         return
-    for reach in (live, np.ones_like(live)):
+    for added in (np.where(live, offset, 0.0), np.full(live.size, offset)):
         yield Explanation(
-            evidence.expected + np.where(reach, offset, 0.0),
+            evidence.expected + added,
             evidence.band + evidence.rounding,
             f"All forces are off by {offset:.6g} {evidence.units.force.text}: one of the two columns was shifted to zero "
             "force at the cutoff, the other was not.",
             "Subtract this force, or add its potential (force times distance to the cutoff) to the energy.",
             measured=offset,
             unit=evidence.units.force.text,
+            scale=added,
         )

@@ -92,6 +92,8 @@ class Explanation:
     unit : str
     details : mapping
         Further keys of the finding.
+    scale : (n,) array or float
+        What the expected forces were multiplied with, or what was added to them, for mending.
     weight : float
         Larger for an explanation that needs more coincidence; ranks it behind others that fit as well.
     """
@@ -103,6 +105,7 @@ class Explanation:
     measured: float | None = None
     unit: str = "1"
     details: dict[str, Any] = field(default_factory=dict)
+    scale: Array | float = 1.0
     weight: float = 0.0
 
 

@@ -61,7 +61,7 @@ def explanation(
     scale = factor * shape
     with np.errstate(all="ignore"):
         predicted, band = scale * evidence.expected, np.abs(scale) * evidence.band + evidence.rounding
-    return Explanation(predicted, band, says, remedy, measured=factor, **more)  # type: ignore[arg-type]
+    return Explanation(predicted, band, says, remedy, measured=factor, scale=scale, **more)  # type: ignore[arg-type]
 
 
 def sign(evidence: Evidence) -> Iterator[Explanation]:

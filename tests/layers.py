@@ -28,6 +28,7 @@ LAYERS = (
     "trials",
     "workflow",
     "tabulating",
+    "ensemble",
     "sheets",
     "notebook",
     "cli",

@@ -103,12 +103,21 @@ def _tabulate_options(command: argparse.ArgumentParser) -> None:
         "--accept", metavar="CHECK", action="append", default=[], help="write although this check has an error"
     )
     command.add_argument("--strict", action="store_true", help="let a warning count as an error")
+    command.add_argument("--parameters", metavar="SETS", help="CSV file: tabulate once for each row")
+    command.add_argument("--workers", metavar="N", type=int, help="processes for them (default: all processors)")
+    command.add_argument("--scheduler", metavar="ADDRESS", default="", help="Dask cluster for them instead")
     command.set_defaults(command=_tabulate)
 
 
 def _tabulate(options: argparse.Namespace) -> int:
+    if options.parameters:
+        return _tabulate_sets(options)
+    from .problems import Problem, UnusableInput
     from .tabulating import tabulate
 
+    for name in ("workers", "scheduler"):
+        if getattr(options, name):
+            raise UnusableInput([Problem(f"--{name}", "This is for sets.", "Add --parameters SETS.")])
     done = tabulate(options.document, into=options.into, accept=options.accept, track=_track)
     _print_report(done.report, as_json=False)
     console = _console()
@@ -119,6 +128,30 @@ def _tabulate(options: argparse.Namespace) -> int:
     for path in done.written:
         console.print(f"wrote {path}", highlight=False, markup=False, soft_wrap=True)
     return _status(done.report, strict=options.strict, accepted=True)
+
+
+def _tabulate_sets(options: argparse.Namespace) -> int:
+    from .ensemble import tabulate_sets
+
+    try:
+        done = tabulate_sets(
+            options.document,
+            options.parameters,
+            into=options.into,
+            accept=options.accept,
+            workers=options.workers,
+            scheduler=options.scheduler,
+            track=_track,
+        )
+    except KeyboardInterrupt:
+        print("Sets that are finished are kept; the same command goes on from there.", file=sys.stderr)
+        raise
+    for line in done.lines():
+        print(line)
+    if done.verdicts.get("unusable"):
+        return UNUSABLE
+    failing = {"fail", "warn"} if options.strict else {"fail"}
+    return FOUND if failing & set(done.verdicts) else GOOD
 
 
 def _plan_options(command: argparse.ArgumentParser) -> None:

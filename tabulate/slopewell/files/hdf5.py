@@ -23,13 +23,18 @@ def write(table: Table, path: Path) -> None:
     import h5py
 
     with whole_file(path) as temporary, h5py.File(temporary, "w", libver=("earliest", "v110")) as file:
-        for key, value in provenance(table).items():
-            if key != "report":
-                file.attrs[key] = value if isinstance(value, str) else json.dumps(value, ensure_ascii=False)
-        file["report"] = json.dumps(table.report, indent=1, ensure_ascii=False)
-        interactions = file.create_group("interactions", track_order=True)
-        for rows in table.interactions:
-            _write_rows(interactions.create_group(rows.name), rows, table.units)
+        write_group(file, table)
+
+
+def write_group(group: Any, table: Table) -> None:
+    """Write a table into a group of an open HDF5 file."""
+    for key, value in provenance(table).items():
+        if key != "report":
+            group.attrs[key] = value if isinstance(value, str) else json.dumps(value, ensure_ascii=False)
+    group["report"] = json.dumps(table.report, indent=1, ensure_ascii=False)
+    interactions = group.create_group("interactions", track_order=True)
+    for rows in table.interactions:
+        _write_rows(interactions.create_group(rows.name), rows, table.units)
 
 
 def _write_rows(group: Any, rows: Rows, units: UnitSystem) -> None:
@@ -63,17 +68,22 @@ def read(path: Path) -> Table:
 
     try:
         with h5py.File(path, "r") as file:
-            if "interactions" not in file or not len(file["interactions"]):
-                raise _refuse(path, "It has no group /interactions.")
-            units = _units(file["interactions"], path)
-            rows = tuple(_read_rows(name, group) for name, group in file["interactions"].items())
-            known = {key: _text(value) for key, value in file.attrs.items()}
-            known["report"] = json.loads(_text(file["report"][()])) if "report" in file else {}
-            return table_from(known, rows, units)
+            return read_group(file, path)
     except (OSError, KeyError, ValueError) as error:
         if isinstance(error, UnusableInput):
             raise
         raise _refuse(path, f"It can't be read: {str(error)[:120]}.") from None
+
+
+def read_group(group: Any, path: Path) -> Table:
+    """Read a table from a group of an open HDF5 file; the path is for messages."""
+    if "interactions" not in group or not len(group["interactions"]):
+        raise _refuse(path, "It has no group /interactions.")
+    units = _units(group["interactions"], path)
+    rows = tuple(_read_rows(name, columns) for name, columns in group["interactions"].items())
+    known = {key: _text(value) for key, value in group.attrs.items()}
+    known["report"] = json.loads(_text(group["report"][()])) if "report" in group else {}
+    return table_from(known, rows, units)
 
 
 def _refuse(path: Path, says: str) -> UnusableInput:

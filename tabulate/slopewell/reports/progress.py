@@ -3,7 +3,7 @@
 from __future__ import annotations
 
 import time
-from collections.abc import Iterable, Iterator
+from collections.abc import Iterable, Iterator, Sized
 from typing import Any, TextIO
 
 PATIENCE = 1.0
@@ -11,8 +11,11 @@ PATIENCE = 1.0
 
 
 def track(items: Iterable[Any], label: str, stream: TextIO) -> Iterator[Any]:
-    """Yield items, showing how many are done and how long the rest will take."""
-    listed = list(items)
+    """Yield items, showing how many are done and how long the rest will take.
+
+    Items that know how many they are come one by one; others are gathered first.
+    """
+    listed = items if isinstance(items, Sized) else list(items)
     if not stream.isatty():
         yield from listed
         return

@@ -3,7 +3,7 @@
 from __future__ import annotations
 
 from collections.abc import Mapping
-from dataclasses import dataclass, field
+from dataclasses import dataclass, field, replace
 from functools import cached_property
 
 import numpy as np
@@ -14,8 +14,10 @@ from ..units import UnitSystem
 from ..units.constants import BOLTZMANN
 from .digits import EPSILON, digits, separation_rounding
 from .mistakes import Evidence
+from .mistakes.rows import MOST_CORRUPTED
 from .row_landmarks import RowLandmarks, row_landmarks
 from .slopes import Slopes, slopes
+from .spikes import energy_spikes, force_spikes
 
 Array = NDArray[np.float64]
 
@@ -114,7 +116,7 @@ def _evidence(
     separation: Array, energy: Array, force: Array, units: UnitSystem, rounding: Mapping[str, Array], found: Slopes
 ) -> Evidence:
     turned = {"separation": rounding["separation"], "energy": rounding["force"], "force": rounding["energy"]}
-    return Evidence(
+    plain = Evidence(
         separation=separation,
         energy=energy,
         force=force,
@@ -124,6 +126,29 @@ def _evidence(
         units=units,
         exchanged=lambda: rows_evidence(separation, force, energy, units, turned),
     )
+    if plain.wrong.size > MOST_CORRUPTED * energy.size:
+        return plain
+    return replace(plain, spikes=_spikes(plain, rounding))
+
+
+def _spikes(evidence: Evidence, rounding: Mapping[str, Array]) -> dict[str, NDArray[np.intp]]:
+    """Return single rows of energy and force that do not fit their neighbours."""
+    separation, energy, force = evidence.separation, evidence.energy, evidence.force
+    with np.errstate(all="ignore"):
+        steep, bend = _size_of_slope(separation, energy), _size_of_bend(separation, energy)
+    own = rounding["separation"]
+    of_energy = rounding["energy"] + NEGLIGIBLE * np.abs(energy) + steep * own
+    of_force = rounding["force"] + NEGLIGIBLE * np.abs(force) + bend * own
+
+    def slopes_of(window: slice, energies: Array) -> Slopes:
+        part = {name: column[window] for name, column in rounding.items()}
+        found = _slopes(separation[window], energies, part)
+        return Slopes(found.values, found.band + part["force"])
+
+    return {
+        "energy": energy_spikes(separation, energy, force, of_energy, slopes_of),
+        "force": force_spikes(separation, energy, force, of_force, evidence.band),
+    }
 
 
 def _slopes(separation: Array, energy: Array, rounding: Mapping[str, Array]) -> Slopes:

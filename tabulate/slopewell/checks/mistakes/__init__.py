@@ -89,7 +89,7 @@ def _misfit(evidence: Evidence, explanation: Explanation) -> float | None:
     apart = distance(evidence.force, explanation.predicted, explanation.band)
     told = np.isfinite(explanation.band)
     wrong = evidence.wrong[told[evidence.wrong]]
-    if wrong.size < 0.5 * evidence.wrong.size:
+    if not wrong.size or wrong.size < 0.5 * evidence.wrong.size:
         return None
     if np.count_nonzero(apart > 1) > REMAINING * evidence.wrong.size:
         return None

@@ -36,7 +36,7 @@ def exchanged(evidence: Evidence) -> Iterator[Explanation]:
 def constant_offset(evidence: Evidence) -> Iterator[Explanation]:
     """Shift all forces before the cutoff by one amount."""
     live = np.arange(evidence.force.size) < evidence.live
-    chosen = evidence.sample[live[evidence.sample]]
+    chosen = evidence.sample[live[evidence.sample] & (evidence.excess[evidence.sample] > 1)]
     if chosen.size < 3:
         return
     weights = 1 / np.maximum(evidence.band + evidence.rounding, 1e-300)[chosen]

@@ -2,7 +2,7 @@
 
 from __future__ import annotations
 
-from collections.abc import Callable
+from collections.abc import Callable, Mapping
 from dataclasses import dataclass, field
 from functools import cached_property
 from typing import Any
@@ -38,6 +38,8 @@ class Evidence:
     units : UnitSystem
     rows : bool
         Whether the separations are rows of a table, which may be shifted or corrupted one by one.
+    spikes : mapping
+        By column, rows whose number does not fit its neighbours although no slope contradicts it.
     exchanged : callable or None
         Gives the same evidence with energy and force columns exchanged.
     """
@@ -50,6 +52,7 @@ class Evidence:
     rounding: Array
     units: UnitSystem
     rows: bool = True
+    spikes: Mapping[str, Numbers] = field(default_factory=dict)
     exchanged: Callable[[], Evidence] | None = None
 
     @cached_property
@@ -59,10 +62,10 @@ class Evidence:
 
     @cached_property
     def wrong(self) -> Numbers:
-        """The rows that contradict their slope, if any does so clearly."""
+        """The rows that contradict their slope, if any does so clearly, and those that do not fit their neighbours."""
         found = np.flatnonzero(self.excess > 1.0)
         clear = found.size and float(self.excess.max()) > CLEAR
-        return found if clear else found[:0]
+        return np.union1d(found if clear else found[:0], [row for rows in self.spikes.values() for row in rows]).astype(np.intp)
 
     @cached_property
     def sample(self) -> Numbers:

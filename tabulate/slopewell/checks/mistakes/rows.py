@@ -58,19 +58,17 @@ class _Halves:
         r, x = evidence.separation, evidence.expected
         band = evidence.band
         wide = np.maximum(band[:-1], band[1:])
-        between = (x[:-1] + x[1:]) / 2
-        self.middles = [(between, wide)]
+        self.middles = []
         if x.size >= 4:
-            # The middle of a cubic through four rows; how far it leaves the straight line bounds its own error.
-            inner = (9 * (x[1:-2] + x[2:-1]) - x[:-3] - x[3:]) / 16
-            moved = np.full(between.size, np.inf)
-            moved[1:-1] = np.abs(inner - between[1:-1]) / 4
-            between = between.copy()
-            between[1:-1] = inner
-            around = np.maximum(
-                wide, np.maximum(np.append(wide[1:], np.inf), np.insert(wide[:-1], 0, np.inf))
-            )
-            self.middles = [(between, around * 1.25 + moved)]
+            around = np.maximum(wide, np.maximum(np.append(wide[1:], np.inf), np.insert(wide[:-1], 0, np.inf)))
+            # Half-way in separation, and half-way in what the rows are even in.
+            for weights in (_middle_weights(r), (-1 / 16, 9 / 16, 9 / 16, -1 / 16)):
+                between = (x[:-1] + x[1:]) / 2
+                moved = np.full(between.size, np.inf)
+                inner = weights[0] * x[:-3] + weights[1] * x[1:-2] + weights[2] * x[2:-1] + weights[3] * x[3:]
+                moved[1:-1] = np.abs(inner - between[1:-1]) / 4
+                between[1:-1] = inner
+                self.middles.append((between, around * 1.25 + moved))
         with np.errstate(all="ignore"):
             quotient = -np.diff(evidence.energy) / np.diff(r)
             slack = np.abs(quotient) * 1e-9 + (evidence.rounding[:-1] + evidence.rounding[1:]) * 2
@@ -104,6 +102,20 @@ class _Halves:
             yield np.where(inside, values[safe], 0.0), width
 
 
+def _middle_weights(separation: Array) -> tuple[Array, Array, Array, Array]:
+    """Return the weights of four rows in the cubic through them, half-way between the middle two."""
+    nodes = [separation[:-3], separation[1:-2], separation[2:-1], separation[3:]]
+    middle = (nodes[1] + nodes[2]) / 2
+    weights = []
+    for node in nodes:
+        weight = np.ones_like(middle)
+        for other in nodes:
+            if other is not node:
+                weight = weight * (middle - other) / (node - other)
+        weights.append(weight)
+    return weights[0], weights[1], weights[2], weights[3]
+
+
 def corrupted(evidence: Evidence) -> Iterator[Explanation]:
     """Take a few rows out of many as corrupted."""
     if not evidence.rows:
@@ -121,16 +133,28 @@ def corrupted_rows(evidence: Evidence, wrong: NDArray[np.intp]) -> Explanation:
     """Return the explanation that some rows are corrupted."""
     predicted = evidence.expected.copy()
     predicted[wrong] = evidence.force[wrong]
+    band = evidence.band + evidence.rounding
+    band[wrong] = np.maximum(evidence.rounding[wrong], 1e-300)
     numbers = [int(row) + 1 for row in wrong]
     shown = ", ".join(map(str, numbers[:8])) + (", …" if len(numbers) > 8 else "")
     several = len(numbers) > 1
     return Explanation(
         predicted,
-        evidence.band + evidence.rounding,
+        band,
         f"{'Rows' if several else 'Row'} {shown} (of {evidence.force.size}) "
         f"{'do' if several else 'does'} not fit {'their' if several else 'its'} neighbours; all others agree.",
         "Recompute these rows, or take them out and interpolate.",
         measured=float(len(numbers)),
-        details={"rows": numbers},
+        details={"rows": numbers, "columns": _columns(evidence, wrong)},
         weight=0.3,
     )
+
+
+def _columns(evidence: Evidence, wrong: NDArray[np.intp]) -> dict[str, list[int]]:
+    """Return the corrupted rows by column: the energy where it spikes, else the force."""
+    energy = set(evidence.spikes.get("energy", np.zeros(0, dtype=int)).tolist())
+    split = {
+        "energy": [int(row) + 1 for row in wrong if int(row) in energy],
+        "force": [int(row) + 1 for row in wrong if int(row) not in energy],
+    }
+    return {name: rows for name, rows in split.items() if rows}

@@ -15,6 +15,8 @@ Numbers = NDArray[np.intp]
 LEAST_ROWS = 3
 ENDED = 0.35
 """Weight of the switch below which it counts as having run to its end within the wrong rows."""
+SOLID = 0.5
+"""Part of the rows between the first and the last wrong one that must be wrong: one window, no single rows."""
 SLACK = 0.05
 
 
@@ -26,6 +28,8 @@ def slope_missing(evidence: Evidence) -> Iterator[Explanation]:
     first, last = int(wrong[0]), int(wrong[-1])
     told = evidence.band < 0.2 * np.abs(evidence.expected)
     if np.count_nonzero(told[:first]) < LEAST_ROWS or last >= evidence.live + 2:
+        return
+    if wrong.size < SOLID * np.count_nonzero(told[first : last + 1]):
         return
     window = np.arange(first, min(last + 1, evidence.live))
     for weight, how in (
@@ -56,7 +60,7 @@ def _of_slope(evidence: Evidence, window: Numbers) -> Array | None:
     energy = evidence.energy[window]
     clear = evidence.excess[window] > 1
     # The missing term pulls the switched energy to zero: it has the opposite sign of the energy.
-    if np.mean((gap * energy)[clear] < 0) < 1 - SLACK:
+    if not clear.any() or np.mean((gap * energy)[clear] < 0) < 1 - SLACK:
         return None
     with np.errstate(all="ignore"):
         rate = np.nan_to_num(gap / energy, nan=0.0, posinf=0.0, neginf=0.0)

@@ -36,6 +36,14 @@ CASES = {
         text(between='["A", "B"]', cutoff=SWITCH + SECOND.replace('"A", "A"', '"B", "A"')),
         [("interaction[1].between", "B-A is given twice: interaction[0] has it already.")],
     ),
+    "two-pairs-of-one-name": (
+        text(
+            between='["A-B", "C"]',
+            units=UNITS + "[species.A-B]\n[species.C]\n[species.B-C]\n",
+            cutoff=SWITCH + SECOND.replace('"A", "A"', '"A", "B-C"') + SWITCH,
+        ),
+        [("interaction[1].between", "interaction[0] is called A-B-C too.")],
+    ),
     "cutoff-beyond-the-grid": (
         cut("9.01"),
         [(f"{CUTOFF}.at", "The cutoff lies beyond the end of the grid.")],

@@ -13,10 +13,12 @@ import numpy as np
 from numpy.typing import NDArray
 
 from . import __version__
+from .checks import PotentialFacts
 from .document import Document, Output
 from .files import Layout, format_of, layout, read_layout
 from .problems import Problem, UnusableInput
-from .table import Rows, Table
+from .table import Rows, Table, tabulate_rows
+from .table.proof import last_places_off, rows_to_prove
 from .units import UnitSystem
 from .units.constants import CODATA
 
@@ -80,6 +82,25 @@ def _targets_of(document: Document, output: Output, into: Path) -> list[Target]:
 def unit_systems(found: list[Target]) -> list[UnitSystem]:
     """Return the systems of units that targets need, each once."""
     return list(dict.fromkeys(target.units for target in found))
+
+
+def certified_rows(facts: PotentialFacts, units: UnitSystem, *, every_row: bool = False) -> Rows:
+    """Return the rows of an interaction with their certificate.
+
+    Parameters
+    ----------
+    facts : PotentialFacts
+    units : UnitSystem
+    every_row : bool
+        Prove every row, not only a few hundred.
+    """
+    curve = facts.potential.treated
+    rows = tabulate_rows(facts.potential, facts.grid, facts.rows, units)
+    chosen = range(facts.rows) if every_row else rows_to_prove(curve, rows, units)
+    certificate: dict[str, Any] = facts.certificate.record(units)
+    certificate["rows_proved"] = len(chosen)
+    certificate["last_places_off"] = round(last_places_off(curve, rows, units, chosen), 2)
+    return replace(rows, certificate=certificate)
 
 
 def write_target(target: Target, document: Document, rows: dict[str, Rows], report: dict[str, Any]) -> None:

@@ -5,16 +5,14 @@ from __future__ import annotations
 from collections.abc import Iterable
 from dataclasses import dataclass, replace
 from pathlib import Path
-from typing import Any
 
 from .checks import ERROR, POTENTIAL_CHECKS, Finding, PotentialFacts
 from .checks.printed_digits import look as printed_digits
 from .document import read_document
-from .outputs import Target, rounding, targets, unit_systems, write_target
+from .outputs import Target, certified_rows, rounding, targets, unit_systems, write_target
 from .problems import Problem, UnusableInput, nearest
 from .reports import Report
-from .table import Rows, tabulate_rows
-from .table.proof import last_places_off, rows_to_prove
+from .table import Rows
 from .units import UnitSystem
 from .workflow import Track, check_document, silently
 
@@ -76,25 +74,6 @@ def _rows(facts: list[PotentialFacts], units: UnitSystem, track: Track) -> dict[
     return {one.potential.name: certified_rows(one, units) for one in track(facts, label)}
 
 
-def certified_rows(facts: PotentialFacts, units: UnitSystem, *, every_row: bool = False) -> Rows:
-    """Return the rows of an interaction with their certificate.
-
-    Parameters
-    ----------
-    facts : PotentialFacts
-    units : UnitSystem
-    every_row : bool
-        Prove every row, not only a few hundred.
-    """
-    curve = facts.potential.treated
-    rows = tabulate_rows(facts.potential, facts.grid, facts.rows, units)
-    chosen = range(facts.rows) if every_row else rows_to_prove(curve, rows, units)
-    certificate: dict[str, Any] = facts.certificate.record(units)
-    certificate["rows_proved"] = len(chosen)
-    certificate["last_places_off"] = round(last_places_off(curve, rows, units, chosen), 2)
-    return replace(rows, certificate=certificate)
-
-
 def _digits(target: Target, facts: list[PotentialFacts], rows: dict[str, Rows]) -> list[Finding]:
     """Return the warnings that a text layout earns by printing too few digits."""
     if target.layout is None:
@@ -127,4 +106,4 @@ def known_checks(names: Iterable[str]) -> tuple[str, ...]:
     return chosen
 
 
-__all__ = ["Tabulated", "certified_rows", "known_checks", "tabulate"]
+__all__ = ["Tabulated", "known_checks", "tabulate"]

@@ -9,6 +9,7 @@ from typing import Any
 
 from .checks import POTENTIAL_CHECKS, Finding, PotentialFacts, potential_facts, run_checks
 from .document import Document, read_document
+from .outputs import certified_rows
 from .problems import UnusableInput
 from .reports import Report, Subject, certificate_record, potential_landmarks, unusable
 from .tables import Reading, check_loaded, is_table, load
@@ -93,8 +94,6 @@ def check_document(document: Document, *, track: Track = silently) -> tuple[Subj
 
 def _prove(subject: Subject, every: list[PotentialFacts], track: Track) -> Subject:
     """Prove every row of the tables that a document asks for, in its own units."""
-    from .tabulating import certified_rows
-
     certificates = []
     for facts in track(every, "proving every row"):
         rows = certified_rows(facts, facts.units, every_row=True)

@@ -8,7 +8,8 @@ import pytest
 from documents import GRID, HEAD, LENNARD_JONES, SWITCH, UNITS, problems, text
 from slopewell.document.validate import key_path
 
-ONE_OF = ("interaction[0]", 'One of "form" or "energy" is missing.')
+KINDS = '"form", "energy", "points", "term" or "segment"'
+ONE_OF = ("interaction[0]", f"One of {KINDS} is missing.")
 
 CASES = {
     "missing-title": (
@@ -34,7 +35,7 @@ CASES = {
     "neither-form-nor-energy": (text("parameters = { a = 1 }\n"), [ONE_OF]),
     "form-and-energy": (
         text(LENNARD_JONES + 'energy = "1/r"\n'),
-        [("interaction[0].energy", 'Only one of "form" or "energy" may be given.')],
+        [("interaction[0].energy", f"Only one of {KINDS} may be given.")],
     ),
     "three-species": (
         text(between='["A", "A", "B"]'),
@@ -71,6 +72,10 @@ CASES = {
     "no-interaction": (
         HEAD + UNITS + GRID,
         [("interaction", 'The key "interaction" is missing in the document.')],
+    ),
+    "spline-without-points": (
+        text(LENNARD_JONES + 'spline = "cubic"\n'),
+        [("interaction[0].spline", '"spline" has no meaning without "points".')],
     ),
     "expectation-of-nothing": (
         text(cutoff=SWITCH + "expect = { depth = { value = 1, within = 1 } }\n"),

@@ -13,7 +13,7 @@ from hypothesis import given
 from hypothesis import strategies as st
 from slopewell.formula.balls import ball, series
 from slopewell.potential import TREATMENTS, Curve, Cutoff, find_landmarks, treat
-from slopewell.potential.cutoff import switch
+from slopewell.potential.cutoff import SWITCHED, switch
 
 Entries = Callable[[str], Any]
 BARE = curve(REDUCED_LENNARD_JONES, Fraction(4, 5), 5)
@@ -109,19 +109,20 @@ def test_an_energy_shifted_curve_has_the_published_depth(published: Entries) -> 
 
 @pytest.mark.parametrize("treatment", TREATMENTS)
 def test_up_to_and_including_the_cutoff_a_row_has_the_value_from_inside(treatment: str) -> None:
-    reading = treated(2.5, treatment, 2 if treatment == "switch" else None)
+    reading = treated(2.5, treatment, 2 if treatment in SWITCHED else None)
     inside = series(reading.pieces[-2].tree, ball(Fraction(5, 2)), 1)
     assert at(reading, 2.5) == pytest.approx([float(c.mid()) for c in inside], abs=1e-16)
 
 
 @pytest.mark.parametrize("treatment", TREATMENTS)
 def test_beyond_the_cutoff_energy_and_force_are_exactly_zero(treatment: str) -> None:
-    reading = treated(2.5, treatment, 2 if treatment == "switch" else None)
+    reading = treated(2.5, treatment, 2 if treatment in SWITCHED else None)
     assert not reading.derivatives(np.array([2.50001, 3.0, 5.0]), 2).any()
 
 
 @pytest.mark.parametrize(
-    ("treatment", "orders"), [("truncate", 0), ("shifted-energy", 1), ("shifted-force", 2)]
+    ("treatment", "orders"),
+    [("truncate", 0), ("shifted-energy", 1), ("shifted-force", 2), ("shifted-stiffness", 3)],
 )
 def test_a_shift_brings_so_many_derivatives_to_zero_at_the_cutoff(treatment: str, orders: int) -> None:
     coefficients = series(treated(2.5, treatment).pieces[0].tree, ball(Fraction(5, 2)), 2)

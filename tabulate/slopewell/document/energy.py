@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+from collections.abc import Mapping
 from dataclasses import dataclass
 from fractions import Fraction
 from typing import Any
@@ -30,43 +31,54 @@ class Named:
 
 
 @dataclass(frozen=True, slots=True)
-class Stated:
-    """Energy, and force where it is stated, as trees in eV, ångström; and the text of the energy."""
+class Formula:
+    """A form or a formula of one's own, parsed and checked, with the values of its names.
 
-    energy: Tree
-    force: Tree | None
-    text: str
-    form: str
+    Attributes
+    ----------
+    texts : mapping
+        The formulas of ``energy`` and, where it is stated, ``force``.
+    trees : mapping
+        The same, parsed.
+    named : Named
+    form : Form or None
+    """
+
+    texts: dict[str, str]
+    trees: dict[str, Tree]
+    named: Named
+    form: Form | None
+
+    def bound(self, key: str) -> Tree:
+        """Return a formula with its values put in, in eV and ångström."""
+        return bind(self.trees[key], self.named.values)
 
 
-def read_energy(notes: Notes, path: str, entry: dict[str, Any], units: UnitSystem) -> Stated | None:
-    """Read ``form`` or ``energy``, ``parameters`` and ``force`` of an interaction.
+def read_formula(notes: Notes, path: str, entry: Mapping[str, Any], units: UnitSystem) -> Formula | None:
+    """Read ``form`` or ``energy``, ``parameters`` and ``force`` of an interaction or one of its terms.
 
     Returns None, and notes the problems, if anything is wrong with them.
     """
     before = len(notes.problems)
     parameters = entry.get("parameters", {})
+    chosen = None
     if "form" in entry:
         chosen = _form(notes, f"{path}.form", entry["form"])
         if chosen is None:
             return None
-        text = chosen.formula
         named = _form_values(notes, f"{path}.parameters", chosen, parameters, units)
     else:
-        text = entry["energy"]
         named = _own_values(notes, f"{path}.parameters", parameters)
-    texts = {"energy": text} | ({"force": entry["force"]} if "force" in entry else {})
-    trees = {key: _parse(notes, f"{path}.{key}", formula) for key, formula in texts.items()}
-    if len(notes.problems) > before or any(tree is None for tree in trees.values()):
+    texts = {"energy": chosen.formula if chosen else entry["energy"]}
+    texts |= {"force": entry["force"]} if "force" in entry else {}
+    parsed = {key: _parse(notes, f"{path}.{key}", formula) for key, formula in texts.items()}
+    trees = {key: tree for key, tree in parsed.items() if tree is not None}
+    if len(notes.problems) > before or len(trees) < len(texts):
         return None
-    found = {key: tree for key, tree in trees.items() if tree is not None}
-    _check_names(notes, path, texts, found, named, own="form" not in entry)
+    _check_names(notes, path, texts, trees, named, own=chosen is None)
     if len(notes.problems) == before:
-        _check_dimensions(notes, path, texts, found, named)
-    if len(notes.problems) > before:
-        return None
-    bound = {key: bind(tree, named.values) for key, tree in found.items()}
-    return Stated(bound["energy"], bound.get("force"), text, entry.get("form", ""))
+        _check_dimensions(notes, path, texts, trees, named)
+    return None if len(notes.problems) > before else Formula(texts, trees, named, chosen)
 
 
 def _form(notes: Notes, path: str, name: str) -> Form | None:
@@ -109,7 +121,11 @@ def _form_values(notes: Notes, path: str, chosen: Form, given: dict[str, Any], u
         if found is None:
             continue
         if broken := parameter.violated(found):
-            notes.add(f"{path}.{name}", f"{name} ({parameter.meaning}) must be {broken}.", "Check its sign and unit.")
+            notes.add(
+                f"{path}.{name}",
+                f"{name} ({parameter.meaning}) must be {broken}.",
+                "Check its sign and unit.",
+            )
         named.values[name] = found
         named.dimensions[name] = dimension(parameter.dimension)
     return named
@@ -123,7 +139,9 @@ def _own_values(notes: Notes, path: str, given: dict[str, Any]) -> Named:
     named = _built_in()
     for name, value in given.items():
         if name in (COORDINATE, *CONSTANTS, *FUNCTIONS):
-            notes.add(f"{path}.{name}", f'"{name}" has a meaning of its own in formulas.', "Choose another name.")
+            notes.add(
+                f"{path}.{name}", f'"{name}" has a meaning of its own in formulas.', "Choose another name."
+            )
             continue
         found = named_value(name, value, notes, f"{path}.{name}")
         if found is not None:

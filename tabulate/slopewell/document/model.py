@@ -5,8 +5,10 @@ from __future__ import annotations
 from collections.abc import Mapping
 from dataclasses import dataclass, field
 from fractions import Fraction
+from typing import Any
 
 from ..potential import Potential
+from ..potential.fitting import Fit
 from ..showing import Shown
 from ..units import UnitSystem
 
@@ -52,12 +54,34 @@ class Expectation:
 
 
 @dataclass(frozen=True, slots=True)
+class Origin:
+    """Where an interaction comes from.
+
+    Attributes
+    ----------
+    kind : str
+        ``stated`` or ``mixed``.
+    rule, form : str
+        Mixing rule and form of a mixed one.
+    parameters : mapping
+        Its parameters in the document's units, or with units of their own.
+    """
+
+    kind: str = "stated"
+    rule: str = ""
+    form: str = ""
+    parameters: Mapping[str, Any] = field(default_factory=dict)
+
+
+@dataclass(frozen=True, slots=True)
 class Interaction:
-    """One pair of species: its potential, its grid, and what its source says."""
+    """One pair of species: its potential, its grid, what its source says, and where it comes from."""
 
     potential: Potential
     grid: Grid
     expectations: tuple[Expectation, ...] = ()
+    origin: Origin = Origin()
+    fits: tuple[Fit, ...] = ()
 
 
 @dataclass(frozen=True, slots=True)
@@ -101,6 +125,8 @@ class Document(Shown):
         From species to dalton, where they are given.
     charges : mapping
         From species to elementary charges, where they are given.
+    number_density : float or None
+        Particles per Å³ that tail corrections are for.
     """
 
     file: str
@@ -114,3 +140,4 @@ class Document(Shown):
     outputs: tuple[Output, ...]
     masses: Mapping[str, Fraction] = field(default_factory=dict)
     charges: Mapping[str, float] = field(default_factory=dict)
+    number_density: float | None = None

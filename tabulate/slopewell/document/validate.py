@@ -64,7 +64,10 @@ def _explain(error: Any, line: Callable[[str], int | None]) -> list[Problem]:
             return [problem for inner in error.context for problem in _explain(inner, line)]
         case "not":
             says = f'"{error.absolute_path[-1]}" has no meaning here.'
-            return [_problem(line, path, says, 'It belongs to treatment = "switch"; take it out.')]
+            remedy = 'It belongs to treatment = "switch" or "force-switch"; take it out.'
+            return [_problem(line, path, says, remedy)]
+        case "dependentRequired":
+            return [_dependent(error, path, line)]
         case _:
             return [_problem(line, path, *_in_words(error))]
 
@@ -79,12 +82,22 @@ def _missing(path: str, key: str, line: Callable[[str], int | None]) -> Problem:
 def _alternatives(error: Any, path: str, line: Callable[[str], int | None]) -> Problem:
     keys = [key for part in error.validator_value for key in part["required"]]
     given = [key for key in keys if key in error.instance]
-    listing = " or ".join(f'"{key}"' for key in keys)
+    quoted = [f'"{key}"' for key in keys]
+    listing = " or ".join([", ".join(quoted[:-1]), quoted[-1]])
     if given:
         return _problem(
             line, f"{path}.{given[-1]}", f"Only one of {listing} may be given.", f"Take out {given[-1]}."
         )
     return _problem(line, path, f"One of {listing} is missing.", f"Add {keys[0]} = …")
+
+
+def _dependent(error: Any, path: str, line: Callable[[str], int | None]) -> Problem:
+    key, others = next(
+        (key, others)
+        for key, others in error.validator_value.items()
+        if key in error.instance and not all(other in error.instance for other in others)
+    )
+    return _problem(line, f"{path}.{key}", f'"{key}" has no meaning without "{others[0]}".', "Take it out.")
 
 
 TYPES = {

@@ -5,6 +5,7 @@ from __future__ import annotations
 from collections.abc import Iterator
 from dataclasses import dataclass
 from fractions import Fraction
+from functools import cached_property
 from itertools import pairwise
 
 import numpy as np
@@ -24,7 +25,7 @@ A separation stated in one unit and converted to another may land beside the end
 """
 
 
-@dataclass(frozen=True, slots=True)
+@dataclass(frozen=True)
 class Curve:
     """Energy as a function of one coordinate.
 
@@ -77,11 +78,16 @@ class Curve:
 
     def indices(self, r: Array) -> NDArray[np.intp]:
         """Return for each separation the number of the piece it belongs to."""
-        index = np.zeros(r.size, dtype=np.intp)
-        for piece in self.pieces[:-1]:
-            edge = float(piece.end)
-            index += r > edge * (1 + SNAP) if piece.closed else r >= edge * (1 - SNAP)
-        return index
+        closed, opened = self._ends
+        return np.searchsorted(closed, r, side="left") + np.searchsorted(opened, r, side="right")
+
+    @cached_property
+    def _ends(self) -> tuple[Array, Array]:
+        """The ends of the inner pieces that hold their own end, and of those that do not, widened by ``SNAP``."""
+        ends = {
+            closed: [float(p.end) for p in self.pieces[:-1] if p.closed == closed] for closed in (True, False)
+        }
+        return np.array(ends[True]) * (1 + SNAP), np.array(ends[False]) * (1 - SNAP)
 
     def _parts(self, r: Array) -> Iterator[tuple[Piece, slice | NDArray[np.intp]]]:
         """Yield each piece with the separations that belong to it, as a slice where they are in order."""

@@ -10,8 +10,12 @@ from ..formula.bind import constant, simplify
 from ..formula.branches import Piece
 from ..formula.tree import ZERO, R, Tree, add, multiply, negate, number, polynomial
 from .curve import Curve
+from .force_switch import switch_force
 
-TREATMENTS = ("truncate", "shifted-energy", "shifted-force", "switch")
+TREATMENTS = ("truncate", "shifted-energy", "shifted-force", "shifted-stiffness", "switch", "force-switch")
+SHIFTED = {"truncate": -1, "shifted-energy": 0, "shifted-force": 1, "shifted-stiffness": 2}
+"""The highest derivative that a shift makes zero at the cutoff."""
+SWITCHED = ("switch", "force-switch")
 
 SWITCHES = {
     1: [Fraction(c) for c in (3, -2)],
@@ -37,9 +41,9 @@ class Cutoff:
     treatment : str
         One of ``TREATMENTS``.
     start : Fraction or None
-        Where a switch begins.
+        Where a switch begins, of the energy or of the force.
     continuity : int
-        Continuous derivatives of a switch: 1, 2 or 3.
+        Continuous derivatives of what is switched: 1, 2 or 3.
     """
 
     at: Fraction
@@ -62,31 +66,45 @@ def treat(curve: Curve, cutoff: Cutoff, end: Fraction) -> Curve:
     Notes
     -----
     ``shifted-force`` subtracts the tangent at the cutoff (S. D. Stoddard and J. Ford, Phys. Rev. A 8,
-    1504 (1973); S. Toxvaerd and J. C. Dyre, J. Chem. Phys. 134, 081102 (2011)).
+    1504 (1973); S. Toxvaerd and J. C. Dyre, J. Chem. Phys. 134, 081102 (2011)); ``shifted-stiffness``
+    one more term of the Taylor expansion there (M. Lamichhane, J. D. Gezelter and K. E. Newman, J. Chem.
+    Phys. 141, 134109 (2014), for expansions of any order). ``force-switch`` is P. J. Steinbach and
+    B. R. Brooks, J. Comput. Chem. 15, 667 (1994), with the weights of ``SWITCHES``.
     """
     inside = curve.within(min(piece.start for piece in curve.pieces), cutoff.at).pieces
     if cutoff.treatment == "switch":
         pieces = _switched(inside, cutoff)
+    elif cutoff.treatment == "force-switch":
+        assert cutoff.start is not None
+        pieces = switch_force(
+            inside, cutoff.start, cutoff.at, switch(cutoff.start, cutoff.at, cutoff.continuity)
+        )
     else:
         rest = _remainder(inside[-1].tree, cutoff)
-        pieces = [Piece(p.start, p.end, simplify("+", (p.tree, rest)) if rest != ZERO else p.tree, p.closed) for p in inside]
+        pieces = [
+            Piece(p.start, p.end, simplify("+", (p.tree, rest)) if rest != ZERO else p.tree, p.closed)
+            for p in inside
+        ]
     if end > cutoff.at:
         last = pieces[-1]
-        pieces = [*pieces[:-1], Piece(last.start, last.end, last.tree, closed=True), Piece(cutoff.at, end, ZERO)]
+        pieces = [
+            *pieces[:-1],
+            Piece(last.start, last.end, last.tree, closed=True),
+            Piece(cutoff.at, end, ZERO),
+        ]
     return Curve(tuple(pieces), curve.coordinate)
 
 
 def _remainder(tree: Tree, cutoff: Cutoff) -> Tree:
-    """Return what is added to a bare curve inside its cutoff."""
-    if cutoff.treatment == "truncate":
+    """Return what is added to a bare curve inside its cutoff: minus its Taylor polynomial there."""
+    order = SHIFTED[cutoff.treatment]
+    if order < 0:
         return ZERO
-    energy, slope = series(tree, ball(cutoff.at), 1)
-    with precision():
-        level = constant(-energy)
-    if cutoff.treatment == "shifted-energy":
-        return level
+    coefficients = series(tree, ball(cutoff.at), order)
     distance = add(number(cutoff.at), negate(R))
-    return add(level, multiply(constant(slope), distance))
+    with precision():
+        terms = [constant(c * (-1) ** (k + 1)) for k, c in enumerate(coefficients)]
+    return add(*(multiply(term, *[distance] * k) for k, term in enumerate(terms)))
 
 
 def _switched(inside: tuple[Piece, ...], cutoff: Cutoff) -> list[Piece]:

@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+import itertools
 from collections.abc import Iterable
 from dataclasses import dataclass
 from fractions import Fraction
@@ -101,7 +102,7 @@ class _Found:
 def _cut(piece: Piece, cuts: Iterable[Fraction]) -> list[Piece]:
     inside = sorted(cut for cut in cuts if piece.start < cut < piece.end)
     edges = [piece.start, *inside, piece.end]
-    parts = [Piece(low, high, piece.tree) for low, high in zip(edges, edges[1:], strict=False)]
+    parts = [Piece(low, high, piece.tree) for low, high in itertools.pairwise(edges)]
     return [*parts[:-1], Piece(edges[-2], piece.end, piece.tree, piece.closed)]
 
 

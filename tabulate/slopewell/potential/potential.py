@@ -8,6 +8,8 @@ from fractions import Fraction
 from ..showing import Shown
 from .curve import Curve
 from .cutoff import Cutoff
+from .joins import Bridge
+from .splines import Points
 
 
 @dataclass(frozen=True, slots=True)
@@ -38,6 +40,10 @@ class Potential(Shown):
         In eV, where the document names it.
     purpose : str
         ``sampling``, ``dynamics`` or ``lattice-dynamics``.
+    bridges : tuple of Bridge
+        Those between its segments.
+    splines : tuple of (Points, Curve)
+        Points that it goes through or near, and the spline between the first and the last.
     """
 
     name: str
@@ -54,6 +60,8 @@ class Potential(Shown):
     temperature: Fraction | None = None
     energy_scale: Fraction | None = None
     purpose: str = "dynamics"
+    bridges: tuple[Bridge, ...] = ()
+    splines: tuple[tuple[Points, Curve], ...] = ()
 
     @property
     def reach(self) -> Fraction:

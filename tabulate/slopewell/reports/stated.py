@@ -17,7 +17,9 @@ TREATMENTS = {
     "truncate": "cut off without a correction",
     "shifted-energy": "shifted, so that the energy ends at zero",
     "shifted-force": "shifted, so that energy and force end at zero",
+    "shifted-stiffness": "shifted, so that energy, force and stiffness end at zero",
     "switch": "switched off",
+    "force-switch": "ended by switching its force off",
 }
 
 
@@ -78,7 +80,7 @@ def _data(text: str) -> Any:
 
 def _stated(entry: dict[str, Any], data: dict[str, Any], units: UnitSystem) -> Stated:
     form = catalogue().get(entry.get("form", ""))
-    cutoff = entry.get("cutoff", {})
+    cutoff = entry.get("cutoff", data.get("cutoff", {}))
     at, start = (_angstrom(cutoff[key], units) if key in cutoff else None for key in ("at", "from"))
     return Stated(
         formula=form.formula if form else entry.get("energy", ""),
@@ -125,7 +127,7 @@ def _treatment(cutoff: dict[str, Any], units: UnitSystem) -> str:
     if not cutoff:
         return ""
     words, at = TREATMENTS[cutoff["treatment"]], _length(cutoff["at"], units)
-    if cutoff["treatment"] != "switch":
+    if "from" not in cutoff:
         return f"{words} at {at}"
     order = cutoff.get("continuity", 2)
     smooth = f"{order} continuous derivative{'s' if order > 1 else ''}"

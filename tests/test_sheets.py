@@ -12,7 +12,6 @@ from slopewell.problems import UnusableInput
 from slopewell.reports.page import Sheet
 from slopewell.sheets import drawings_of, sheet, sheet_of
 
-MEMBRANE = ROOT / "samples" / "membrane.toml"
 ARGON_LIKE = """schema = "slopewell/potential/1"
 title = "Argon-like pair"
 temperature = "100 K"
@@ -82,8 +81,11 @@ def test_a_document_and_its_table_over_each_other(pair: Path, table: Path) -> No
 
 
 def test_one_interaction_of_many(tmp_path: Path) -> None:
-    _, shown = sheet([MEMBRANE], tmp_path / "one.html", only=["W-P"])
-    assert [drawing.name for drawing in shown.drawings] == ["W-P"]
+    path = tmp_path / "two.toml"
+    second = ARGON_LIKE.partition("[[interaction]]")[2].partition("[grid]")[0].replace('"A", "A"', '"A", "B"')
+    path.write_text(f"{ARGON_LIKE}[species.B]\n[[interaction]]{second}", encoding="utf-8")
+    _, shown = sheet([path], only=["A-B"])
+    assert [drawing.name for drawing in shown.drawings] == ["A-B"]
 
 
 def test_drawings_of_a_document_checked_before(pair: Path) -> None:
@@ -115,8 +117,16 @@ def test_what_can_not_be_done_is_said(
 
 
 def test_files_without_a_common_pair_are_not_compared(pair: Path) -> None:
+    other = pair.with_name("other.toml")
+    other.write_text(
+        ARGON_LIKE.replace('"A", "A"', '"B", "B"').replace("species.A", "species.B"), encoding="utf-8"
+    )
+    # Two files of one interaction each are compared whatever it is called; here the second has two.
+    with other.open("a", encoding="utf-8") as file:
+        file.write('[species.C]\n[[interaction]]\nbetween = ["B", "C"]\nform = "lennard-jones"\n')
+        file.write("parameters = { epsilon = 0.01, sigma = 3.4 }\n")
     with pytest.raises(UnusableInput, match="no interaction in common"):
-        sheet([MEMBRANE, pair], pair.with_name("out.html"))
+        sheet([pair, other])
 
 
 def test_a_failing_potential_gets_its_page_and_exit_status_1(tmp_path: Path) -> None:

@@ -10,6 +10,7 @@ from typing import Any
 from .document import Document, read_document
 from .files.atomic import write_text
 from .problems import Problem, UnusableInput, nearest
+from .reports.along import error_along
 from .reports.drawing import Drawing, document_drawings, overlaid, table_drawings
 from .reports.page import Sheet, page
 from .table import Table
@@ -18,6 +19,8 @@ from .workflow import Track, check_document, silently
 
 PICTURES = (".png", ".svg", ".pdf")
 ENDINGS = (".html", *PICTURES)
+FEW = 12
+"""Interactions up to which the proved error is drawn along the rows of each, which takes its time."""
 OWN = Reading()
 """Reads what slopewell wrote."""
 
@@ -107,8 +110,15 @@ def drawings_of(path: Path, record: Mapping[str, Any], reading: Reading = OWN) -
 
 def document_sheet(document: Document, *, track: Track = silently) -> Sheet:
     """Return what there is to show of a document."""
-    subject, _ = check_document(document, track=track)
+    subject, every = check_document(document, track=track)
     record = subject.record()
+    certified = {entry["interaction"] for entry in subject.certificates} if len(every) <= FEW else set()
+    drawings = tuple(
+        replace(drawing, error=error_along(known, drawing.view.separation[0]))
+        if drawing.name in certified
+        else drawing
+        for drawing, known in zip(document_drawings(document, record), every, strict=True)
+    )
     facts = (
         ("File", Path(document.file).name),
         ("SHA-256 of the file", document.sha256),
@@ -116,9 +126,7 @@ def document_sheet(document: Document, *, track: Track = silently) -> Sheet:
         ("Physical constants", "CODATA 2022"),
         ("Checks that ran", ", ".join(subject.checked)),
     )
-    return Sheet(
-        document.title, document.source, document_drawings(document, record), record, facts, document.text
-    )
+    return Sheet(document.title, document.source, drawings, record, facts, document.text)
 
 
 def table_sheet(table: Table, file: str, record: Mapping[str, Any]) -> Sheet:

@@ -66,6 +66,11 @@ def landmarks_in(record: Mapping[str, Any], name: str, units: UnitSystem) -> dic
     }
 
 
+def certificate_in(record: Mapping[str, Any], name: str) -> Mapping[str, Any]:
+    """Return what a subject's record certifies about an interaction; empty if nothing."""
+    return next((each for each in record.get("certificates", ()) if each.get("interaction") == name), {})
+
+
 def flags_in(record: Mapping[str, Any], name: str, units: UnitSystem) -> tuple[Flag, ...]:
     """Return the findings about an interaction from a subject's record, placed in the given units."""
     written = next((entry["units"]["length"] for entry in record.get("landmarks", ())), units.length.text)

@@ -8,7 +8,8 @@ from ..units import UnitSystem
 from .drawing import Drawing
 from .markup import Markup, join, quantity, tag
 from .mathml import formula_markup, name_markup
-from .plot import LEVEL_SIGNS, flag_track, letter, panel_markup, panels_of, separation_axis
+from .panels import bound_panels, panels_of
+from .plot import LEVEL_SIGNS, flag_track, letter, panel_markup, separation_axis
 from .verdicts import VERDICTS, mark_of
 from .view import number_text, unit_text
 
@@ -52,7 +53,9 @@ def _formula(drawing: Drawing) -> Markup:
 
 def _figure(drawing: Drawing, number: int, systems: Sequence[UnitSystem]) -> Markup:
     prefix = f"pair-{number}"
-    panels = [panel_markup(panel, drawing, systems) for panel in panels_of(drawing)]
+    panels = [
+        panel_markup(panel, drawing, systems) for panel in [*panels_of(drawing), *bound_panels(drawing)]
+    ]
     slider = tag(
         "input",
         type="range",
@@ -120,6 +123,11 @@ def _facts(drawing: Drawing) -> Iterator[Markup]:
     ]
     if rows:
         yield tag("table", tag("caption", "Landmarks"), tag("tbody", *rows))
+    rows = [
+        tag("tr", tag("th", label, scope="row"), tag("td", value)) for label, value in _certified(drawing)
+    ]
+    if rows:
+        yield tag("table", tag("caption", "Reading between rows"), tag("tbody", *rows))
     stated = drawing.stated
     if stated is None:
         return
@@ -180,6 +188,24 @@ def _landmark_rows(drawing: Drawing) -> Iterator[tuple[Markup, Markup]]:
     if known.get("stationary_points") is not None:
         certainty = "proved" if known.get("proved") else "not proved"
         yield label("stationary points", None), Markup(f"{known['stationary_points']} ({certainty})")
+
+
+def _certified(drawing: Drawing) -> Iterator[tuple[str, Markup]]:
+    """Yield what is proved about reading between the rows, as labels and values."""
+    certificate, units = drawing.certificate, drawing.units
+    if not certificate:
+        return
+    for words, power in (("energy", 0), ("force", 1)):
+        bound = certificate.get(f"{words}_error_bound")
+        if bound is not None:
+            size = quantity(bound, units.per_length(power).text, 1, -power, 3)
+            at = quantity(certificate[f"{words}_error_at"], units.length.text, 0, 1, 4)
+            yield f"error of {words}", join(["at most ", size, " near ", at])
+    if not certificate.get("proved", True):
+        yield "errors", Markup("no bound could be proved")
+    if "last_places_off" in certificate:
+        off, proved = certificate["last_places_off"], certificate.get("rows_proved", 0)
+        yield "rows", Markup(f"{proved:,} proved right within {number_text(off, 3)} units in the last place")
 
 
 def _findings(drawing: Drawing, prefix: str) -> Markup:

@@ -14,7 +14,8 @@ from ..potential import Potential
 from ..table import Rows, Table
 from ..table.interpolation import interpolant
 from ..units import UnitSystem, ratio
-from .annotation import Flag, Mark, flags_in, landmarks_in, marks_of
+from .along import ErrorAlong
+from .annotation import Flag, Mark, certificate_in, flags_in, landmarks_in, marks_of
 from .stated import Stated, stated_interactions
 from .view import View, round_step, thin, view_of
 
@@ -50,7 +51,9 @@ class Drawing:
     stated : Stated or None
         What the document says of it.
     certificate : mapping
-        What was proved about its rows.
+        What was proved about its rows, in the drawing's units.
+    error : ErrorAlong or None
+        The proved error of reading between rows, along them.
     rows : int or None
         Rows of the table; None for a formula.
     read : callable
@@ -74,6 +77,7 @@ class Drawing:
     switch_start: float | None = None
     stated: Stated | None = None
     certificate: Mapping[str, Any] = field(default_factory=dict)
+    error: ErrorAlong | None = None
     rows: int | None = None
     other: Overlay | None = None
 
@@ -137,6 +141,7 @@ def potential_drawing(
         cutoff=at,
         switch_start=switch_start,
         stated=stated,
+        certificate=certificate_in(record, potential.name),
     )
     return _annotated(drawing, record)
 
@@ -211,7 +216,7 @@ def _in_order(rows: Rows) -> Rows:
     kept = kept[np.isfinite(rows.separation[kept])]
     if np.array_equal(kept, np.arange(rows.separation.size)):
         return rows
-    columns = {name: column[kept] for name, column in rows.columns().items()}
+    columns: dict[str, Any] = {name: column[kept] for name, column in rows.columns().items()}
     return replace(rows, **columns)
 
 

@@ -190,7 +190,7 @@ def _provenance(sheet: Sheet) -> Markup:
         return Markup("")
     parts = [tag("h2", "Where this comes from", id_="provenance"), tag("dl", *facts)]
     if sheet.document:
-        text = tag("pre", tag("code", sheet.document), tabindex=0, role="group", aria_label="text of the document")
+        text = tag("pre", tag("code", sheet.document), tabindex=0, role="group", aria_label="its text")
         parts.append(tag("details", tag("summary", "The document"), text))
     return tag("section", *parts, class_="provenance", aria_labelledby="provenance")
 

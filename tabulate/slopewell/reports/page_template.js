@@ -60,7 +60,8 @@
       case "energy": return found.energy[row];
       case "force": return found.force[row];
       case "energy-difference": return found.otherEnergy[row] - found.energy[row];
-      default: return found.otherForce[row] - found.force[row];
+      case "force-difference": return found.otherForce[row] - found.force[row];
+      default: return NaN;
     }
   }
 

@@ -10,7 +10,7 @@ from typing import TYPE_CHECKING, Any
 from ..problems import Problem, UnusableInput
 from .annotation import Mark
 from .drawing import Drawing
-from .plot import Panel, panels_of
+from .panels import Panel, panels_of, senses
 from .verdicts import VERDICTS
 from .view import number_text, unit_text
 
@@ -135,14 +135,14 @@ def _panel(ax: Axes, panel: Panel, drawing: Drawing, *, labelled: bool) -> None:
     if not labelled:
         return
     for mark in drawing.marks:
-        if mark.panel == panel.kind:
+        if mark.panel == panel.kind and panel.limits[0] <= mark.value <= panel.limits[1]:
             _mark(ax, mark, drawing)
     if panel.kind == "energy":
         _ends(ax, drawing)
-    for words, height, side in zip(panel.words, (0.97, 0.14), ("top", "bottom"), strict=True):
-        if words:
-            place = {"transform": ax.transAxes, "ha": "right", "va": side}
-            ax.text(0.985, height, words, color=COLOURS[column], fontsize="small", **place)
+    for words, side in senses(panel):
+        height, anchor = (0.97, "top") if side == "above" else (0.14, "bottom")
+        place = {"transform": ax.transAxes, "ha": "right", "va": anchor}
+        ax.text(0.985, height, words, fontdict=place, color=COLOURS[column], fontsize="small")
     if drawing.other is not None and panel.high:
         ax.legend(loc="center right", frameon=False, fontsize="small")
 

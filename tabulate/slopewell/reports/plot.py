@@ -3,7 +3,7 @@
 from __future__ import annotations
 
 from collections.abc import Sequence
-from dataclasses import dataclass
+from math import log10
 
 import numpy as np
 from numpy.typing import NDArray
@@ -12,7 +12,8 @@ from ..units import UnitSystem, ratio
 from .annotation import Mark
 from .drawing import Drawing
 from .markup import Markup, join, quantity, tag
-from .view import Limits, ticks, unit_text
+from .panels import Panel, senses, share
+from .view import decades, ticks, unit_text
 
 Array = NDArray[np.float64]
 
@@ -22,62 +23,6 @@ LEVEL_SIGNS = {"error": "✕", "warning": "▲", "note": "●"}
 LABEL_DIGITS = 4
 CROWDED = 0.07
 """Part of the width within which two flags would cover each other."""
-
-
-@dataclass(frozen=True, slots=True, eq=False)
-class Panel:
-    """One panel: a column of a drawing, what it is called, and how its unit is made."""
-
-    kind: str
-    title: str
-    limits: Limits
-    curves: tuple[tuple[str, Array], ...]
-    per_length: int
-    words: tuple[str, str] = ("", "")
-    high: bool = True
-
-
-def panels_of(drawing: Drawing) -> list[Panel]:
-    """Return the panels of a drawing: energy, force, and the differences where two are compared."""
-    view, other = drawing.view, drawing.other
-    second_energy, second_force = (other.energy, other.force) if other else (None, None)
-    panels: list[Panel] = []
-    for kind, column, limits, second, per_length in (
-        ("energy", drawing.energy, view.energy, second_energy, 0),
-        ("force", drawing.force, view.force, second_force, 1),
-    ):
-        if column is None or limits is None:
-            continue
-        curves = ((kind, column),) if second is None else ((kind, column), ("other", second))
-        words = FORCE_WORDS if kind == "force" else ("", "")
-        panels.append(Panel(kind, kind.capitalize(), limits, curves, per_length, words))
-        if second is not None:
-            panels.append(_difference(kind, second - column, limits, per_length, drawing))
-    return panels
-
-
-def _difference(kind: str, difference: Array, limits: Limits, per_length: int, drawing: Drawing) -> Panel:
-    shown = difference[_inside(drawing) & np.isfinite(difference)]
-    title, around = f"Difference of {kind}", _difference_limits(shown, limits)
-    return Panel(f"{kind}-difference", title, around, ((kind, difference),), per_length, high=False)
-
-
-FORCE_WORDS = ("▴ repulsion: pushes apart", "▾ attraction: pulls together")
-
-
-def _inside(drawing: Drawing) -> NDArray[np.bool_]:
-    low, high = drawing.view.separation
-    result: NDArray[np.bool_] = (drawing.separation >= low) & (drawing.separation <= high)
-    return result
-
-
-def _difference_limits(shown: Array, limits: Limits) -> Limits:
-    """Return limits around a difference, the wall's part left out."""
-    if shown.size == 0 or not np.any(shown):
-        return -1e-6 * (limits[1] - limits[0]), 1e-6 * (limits[1] - limits[0])
-    far = shown[shown.size // 8 :] if np.any(shown[shown.size // 8 :]) else shown
-    size = float(np.abs(far).max()) * 1.15
-    return -size, size
 
 
 def panel_markup(panel: Panel, drawing: Drawing, systems: Sequence[UnitSystem]) -> Markup:
@@ -92,12 +37,7 @@ def panel_markup(panel: Panel, drawing: Drawing, systems: Sequence[UnitSystem]) 
         tag("span", unit_text(unit), class_="unit", data_powers=powers),
         class_="panel-title",
     )
-    above, below = panel.words
-    words = [
-        tag("span", text, class_=f"sense {side}")
-        for text, side in ((above, "above"), (below, "below"))
-        if text
-    ]
+    words = [tag("span", text, class_=f"sense {side}") for text, side in senses(panel)]
     plot = tag(
         "div",
         _svg(panel, drawing),
@@ -113,11 +53,6 @@ def panel_markup(panel: Panel, drawing: Drawing, systems: Sequence[UnitSystem]) 
     return tag("div", heading, plot, class_=f"panel {panel.kind}" + ("" if panel.high else " low"))
 
 
-def _share(value: float, limits: Limits) -> float:
-    """Return how far down a value lies in a panel, in per cent."""
-    return 100 * (limits[1] - value) / (limits[1] - limits[0])
-
-
 def _along(r: float, drawing: Drawing) -> float:
     low, high = drawing.view.separation
     return 100 * (r - low) / (high - low)
@@ -126,7 +61,7 @@ def _along(r: float, drawing: Drawing) -> float:
 def _svg(panel: Panel, drawing: Drawing) -> Markup:
     low, high = drawing.view.separation
     x = (drawing.separation - low) / (high - low) * SIZE
-    zero = _share(0.0, panel.limits) / 100 * SIZE
+    zero = share(0.0, panel.limits) / 100 * SIZE
     parts = []
     if drawing.switch_start is not None and drawing.cutoff is not None:
         start, end = (
@@ -135,7 +70,8 @@ def _svg(panel: Panel, drawing: Drawing) -> Markup:
         width = f"{end - start:.1f}"
         parts.append(tag("rect", class_="window", x=f"{start:.1f}", y=0, width=width, height=SIZE))
     parts += [_flag_area(flag.start, flag.end, str(flag.finding["level"]), drawing) for flag in drawing.flags]
-    parts.append(tag("path", class_="zero", d=f"M0 {zero:.1f}H{SIZE}"))
+    if not panel.logarithmic:
+        parts.append(tag("path", class_="zero", d=f"M0 {zero:.1f}H{SIZE}"))
     if drawing.cutoff is not None:
         parts.append(
             tag("path", class_="cutoff", d=f"M{_along(drawing.cutoff, drawing) * SIZE / 100:.1f} 0V{SIZE}")
@@ -182,10 +118,15 @@ def _vertical_ticks(panel: Panel, drawing: Drawing, systems: Sequence[UnitSystem
     parts = []
     for index, system in enumerate(systems):
         factor = float(ratio(own, system.per_length(panel.per_length)))
-        limits = (panel.limits[0] * factor, panel.limits[1] * factor)
+        if panel.logarithmic:
+            limits = (panel.limits[0] + log10(factor), panel.limits[1] + log10(factor))
+            found = decades(limits)
+        else:
+            limits = (panel.limits[0] * factor, panel.limits[1] * factor)
+            found = ticks(limits, 6 if panel.high else 3)
         parts += [
-            tag("span", tag("i", text), class_=f"tick u{index}", style=f"top:{_share(value, limits):.2f}%")
-            for value, text in ticks(limits, 6 if panel.high else 3)
+            tag("span", tag("i", text), class_=f"tick u{index}", style=f"top:{share(value, limits):.2f}%")
+            for value, text in found
         ]
     return tag("div", *parts, class_="ticks", aria_hidden="true")
 
@@ -211,9 +152,9 @@ def separation_axis(drawing: Drawing, systems: Sequence[UnitSystem]) -> Markup:
 
 
 def _mark(mark: Mark, number: int, panel: Panel, drawing: Drawing) -> Markup:
-    if mark.panel != panel.kind:
+    across, down = _along(mark.separation, drawing), share(mark.value, panel.limits)
+    if mark.panel != panel.kind or not (0 <= across <= 100 and 0 <= down <= 100):
         return Markup("")
-    across, down = _along(mark.separation, drawing), _share(mark.value, panel.limits)
     side = "left" if across > 60 else "right"
     label = tag(
         "span",

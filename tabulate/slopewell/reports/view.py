@@ -138,6 +138,13 @@ def ticks(limits: Limits, count: int) -> list[tuple[float, str]]:
     return [(k * step, _tick_text(k * step, places)) for k in range(first, last + 1)]
 
 
+def decades(limits: Limits) -> list[tuple[float, str]]:
+    """Return whole powers of ten between two logarithms, at most about four, with their texts."""
+    first, last = ceil(limits[0]), floor(limits[1])
+    step = max(1, (last - first) // 3)
+    return [(float(power), f"10{str(power).translate(RAISED)}") for power in range(first, last + 1, step)]
+
+
 def _tick_text(value: float, places: int) -> str:
     if abs(value) >= 1e5 or places > 4:
         return number_text(value, 3)

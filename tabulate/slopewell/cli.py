@@ -10,6 +10,7 @@ from collections.abc import Callable, Iterable, Iterator, Sequence
 from pathlib import Path
 from typing import TYPE_CHECKING, Any
 
+from .study_commands import predict_options, trial_options
 from .table_commands import compare_options, convert_options, foreign_options, foreign_reading
 
 if TYPE_CHECKING:
@@ -223,88 +224,6 @@ def _sheet(options: argparse.Namespace) -> int:
     return FOUND if shown.record.get("verdict") in failing else GOOD
 
 
-def _study_options(command: argparse.ArgumentParser) -> None:
-    """Add what predict and trial have in common."""
-    command.add_argument("file", metavar="FILE", help="potential document or table")
-    foreign_options(command)
-    command.add_argument("--document", metavar="FILE", help="document behind a table that does not store it")
-    command.add_argument("--mass", metavar="NAME=MASS", action="append", default=[], help='"Ar=39.95 dalton"')
-    command.add_argument("--density", metavar="DENSITY", help='number density, "0.021 angstrom^-3"')
-    command.add_argument("--json", action="store_true", help="print only the result, as JSON")
-
-
-def _predict_options(command: argparse.ArgumentParser) -> None:
-    _study_options(command)
-    command.add_argument("--temperatures", metavar="LIST", help="in kelvin: 150:700:50 or 100,300")
-    command.add_argument("--structure", metavar="NAME", action="append", default=[], help="only this crystal")
-    command.set_defaults(command=_predict)
-
-
-def _predict(options: argparse.Namespace) -> int:
-    from .forecasting import predict, read_density, read_masses, read_temperatures
-
-    forecast = predict(
-        options.file,
-        temperatures=read_temperatures(options.temperatures) if options.temperatures else None,
-        number_density=read_density(options.density) if options.density else None,
-        structures=options.structure,
-        reading=foreign_reading(options),
-        document=options.document,
-        masses=read_masses(options.mass),
-    )
-    record = forecast.record()
-    if options.json:
-        _print_json(record)
-        return GOOD
-    from .reports.forecast import forecast_lines
-
-    for line in forecast_lines(forecast.studied.title or options.file, record["predictions"], forecast.notes):
-        print(line)
-    return GOOD
-
-
-def _trial_options(command: argparse.ArgumentParser) -> None:
-    _study_options(command)
-    command.add_argument("--length", metavar="TIME", default="1 ns", help='of the run to judge, such as "100 ns"')
-    command.add_argument("--temperature", metavar="T", help='such as "300 K" (default: that of the document)')
-    command.add_argument("--time-step", metavar="TIME", help='such as "2 fs"')
-    command.add_argument("--interpolation", metavar="RULE", default="", help="how the code reads between rows")
-    command.add_argument("--particles", metavar="N", type=int, help="how many")
-    command.add_argument("--steps", metavar="N", type=int, help="of each run")
-    command.add_argument("--seeds", metavar="N", type=int, default=2, help="how many runs (default: 2)")
-    command.set_defaults(command=_trial)
-
-
-def _trial(options: argparse.Namespace) -> int:
-    from .forecasting import read_density, read_masses
-    from .trials import read_time, trial
-    from .units import temperature
-
-    done = trial(
-        options.file,
-        reading=_foreign_reading(options),
-        document=options.document,
-        masses=read_masses(options.mass),
-        rule=options.interpolation,
-        temperature=float(temperature(options.temperature)) if options.temperature else None,
-        number_density=read_density(options.density) if options.density else None,
-        step=read_time(options.time_step, "--time-step") if options.time_step else None,
-        particles=options.particles,
-        steps=options.steps,
-        seeds=options.seeds,
-        length=read_time(options.length, "--length") / 1e6,
-        track=_track,
-    )
-    if options.json:
-        _print_json(done.record())
-    else:
-        from .reports.forecast import trial_lines
-
-        for line in trial_lines(done.studied.title or options.file, done.record()):
-            print(line)
-    return FOUND if done.verdict == "fail" else GOOD
-
-
 def _completion_options(command: argparse.ArgumentParser) -> None:
     command.add_argument("shell", metavar="SHELL", help="bash, fish or zsh")
     command.set_defaults(command=_completion)
@@ -342,7 +261,8 @@ COMMANDS: tuple[tuple[str, str, Callable[[argparse.ArgumentParser], None]], ...]
     ("compare", "how far two tables, or a table and a document, lie apart", compare_options),
     ("plan", "how many rows each grid and interpolation rule needs", _plan_options),
     ("sheet", "write a page or a picture of curves, landmarks and findings", _sheet_options),
-    ("predict", "crystals, gas, vibrations: what the curve and the table give", _predict_options),
+    ("predict", "crystals, gas, vibrations: what the curve and the table give", predict_options),
+    ("trial", "a short simulation on the table: how far its energy drifts", trial_options),
     ("forms", "list the catalogue of published forms, or show one", _forms_options),
     ("units", "convert a quantity to another unit", _units_options),
     ("schema", "print a published schema", _schema_options),

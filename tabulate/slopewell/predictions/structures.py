@@ -82,7 +82,7 @@ STRUCTURES = (
 """The crystals that are tried; hcp has the ideal ratio of its axes."""
 
 
-@lru_cache(maxsize=32)
+@lru_cache(maxsize=128)
 def neighbours(structure: Structure, radius: float) -> tuple[tuple[int, int, Array], ...]:
     """Return the vectors from each atom of the cell to every atom within a radius, by pair of atoms.
 
@@ -110,7 +110,7 @@ def neighbours(structure: Structure, radius: float) -> tuple[tuple[int, int, Arr
     return tuple(found)
 
 
-@lru_cache(maxsize=64)
+@lru_cache(maxsize=512)
 def shells(structure: Structure, radius: float) -> tuple[tuple[int, int, Array, Array], ...]:
     """Return distances between atoms within a radius and how many there are in a cell, by pair of species."""
     gathered: dict[tuple[int, int], list[Array]] = {}

@@ -26,6 +26,15 @@ CRYSTAL = (
     ("zone-boundary-frequency", "zone edge"),
 )
 FEW_LEVELS = 4
+MOST_IN_FULL = 2
+PAIR = (
+    ("equilibrium-separation", "distance"),
+    ("well-depth", "depth"),
+    ("harmonic-wavenumber", "wavenumber"),
+    ("dissociation-energy", "dissociation"),
+    ("boyle-temperature", "Boyle"),
+    ("collision-diameter", "diameter"),
+)
 MATRIX = {name.split()[0] for name in (*PER_TEMPERATURE, *(name for name, _ in CRYSTAL))}
 HIDDEN = {"pressure", "nearest-distance", "smallest-stiffness"}
 
@@ -39,8 +48,17 @@ def forecast_lines(title: str, rows: Sequence[Row], notes: Iterable[str]) -> Ite
     rows : sequence of mapping
         As in its JSON.
     notes : iterable of str
+
+    Notes
+    -----
+    More than two subjects get a line each; one alone is asked for by ``--subject``.
     """
     yield title
+    subjects = list(dict.fromkeys(row["subject"] for row in rows))
+    if len(subjects) > MOST_IN_FULL:
+        yield from _overview(rows)
+        yield from ("", *(f"  - {note}" for note in notes))
+        return
     for subject in dict.fromkeys(row["subject"] for row in rows):
         own = [row for row in rows if row["subject"] == subject]
         yield f"\n  {subject}"
@@ -50,6 +68,59 @@ def forecast_lines(title: str, rows: Sequence[Row], notes: Iterable[str]) -> Ite
     if notes:
         yield ""
         yield from (f"  - {note}" for note in notes)
+
+
+def _overview(rows: Sequence[Row]) -> Iterator[str]:
+    """Yield a line a pair, and the crystal of lowest energy of each subject that forms one."""
+    units = {row["quantity"]: row["unit"] for row in rows}
+    by_subject = {
+        name: [row for row in rows if row["subject"] == name]
+        for name in dict.fromkeys(r["subject"] for r in rows)
+    }
+    yield ""
+    yield f"  {'pair':<10}" + "".join(f"{head:>14}" for _, head in PAIR) + f"{'table-curve':>14}"
+    yield f"  {'':<10}" + "".join(f"{units.get(name, ''):>14}" for name, _ in PAIR)
+    for subject, own in by_subject.items():
+        pair = [row for row in own if "structure" not in row]
+        if pair:
+            cells = [number(_either(pair, name)) for name, _ in PAIR]
+            yield f"  {subject:<10}" + "".join(f"{cell:>14}" for cell in (*cells, _farthest(pair)))
+    bound = {
+        name: _deepest(own) for name, own in by_subject.items() if any("structure" in row for row in own)
+    }
+    if bound:
+        yield ""
+        yield f"  {'crystal':<28}" + "".join(f"{head:>11}" for _, head in CRYSTAL) + "  shear"
+        yield f"  {'':<28}" + "".join(f"{units.get(name.split()[0], ''):>11}" for name, _ in CRYSTAL)
+    for subject, own in bound.items():
+        head = f"{subject} {own[0]['structure']}"
+        cells = [number(_either(own, name)) for name, _ in CRYSTAL]
+        stands = (_either(own, "smallest-stiffness") or 0) > 0
+        yield (
+            f"  {head:<28}"
+            + "".join(f"{cell:>11}" for cell in cells)
+            + f"  {'stands' if stands else 'gives way'}"
+        )
+    yield ""
+    yield "  One line a pair, and its crystal of lowest energy; --subject NAME or --json shows everything."
+
+
+def _either(rows: Sequence[Row], name: str) -> float | None:
+    curve = _value(rows, name, "curve")
+    return _value(rows, name, "table") if curve is None else curve
+
+
+def _farthest(rows: Sequence[Row]) -> str:
+    """Return the largest relative difference between table and curve."""
+    both = [(row["curve"], row["table"]) for row in rows if row["curve"] and row["table"] is not None]
+    return f"{max(abs(table / curve - 1) for curve, table in both):.1e}" if both else "-"
+
+
+def _deepest(rows: Sequence[Row]) -> list[Row]:
+    """Return the rows of the crystal of lowest energy."""
+    structures = {row["structure"] for row in rows if "structure" in row}
+    by_name = {name: [row for row in rows if row.get("structure") == name] for name in sorted(structures)}
+    return max(by_name.values(), key=lambda own: _either(own, "cohesive-energy") or 0.0)
 
 
 def number(value: float | None, digits: int = 6) -> str:
@@ -136,3 +207,39 @@ def _gas(rows: Sequence[Row]) -> Iterator[str]:
         yield f"    {temperature:<12g}" + "".join(
             f"{cell:>14}" for cell in (cells[0], difference, *cells[1:])
         )
+
+
+VERDICTS = {
+    "pass": "holds its energy",
+    "warn": "may lose track of its energy",
+    "fail": "does not hold its energy",
+}
+
+
+def trial_lines(title: str, record: Row) -> Iterator[str]:
+    """Yield the lines of a trial run, given its JSON."""
+    run, drift, growth = record["conditions"], record["drift"], record["growth"]
+    yield title
+    yield ""
+    yield (
+        f"  {run['particles']} particles, {run['steps']} steps of {run['time_step']:.3g} fs, "
+        f"{run['seeds']} runs, {run['temperature']:.4g} K, {run['number_density']:.4g} angstrom^-3"
+    )
+    yield f"  drift     {drift['value']:+.2e} +- {drift['error']:.1e} {drift['unit']} a particle"
+    ripple = record["ripple"]
+    yield f"  ripple    {ripple['value']:.1e} k_B*T; halving the step shows order {ripple['order']:.2f}"
+    yield ""
+    yield f"    {'cause':<18}{'drift':>12}{'error':>12}{'size':>12}{'share':>8}"
+    for cause in record["causes"]:
+        yield (
+            f"    {cause['cause']:<18}{cause['drift']:>12.1e}{cause['error']:>12.1e}{cause['size']:>12.1e}"
+            f"{cause['share']:>8.0%}"
+        )
+    yield ""
+    yield (
+        f"  A run of {growth['length']:g} ns {VERDICTS[record['verdict']]} ({record['verdict']}): "
+        f"{growth['value']:.2g} k_B*T a particle."
+    )
+    if record["notes"]:
+        yield ""
+        yield from (f"  - {note}" for note in record["notes"])

@@ -18,6 +18,9 @@ MOST_JOINS = 3
 """Places at which the step of a grid may change on purpose."""
 FULL = 16
 """From so many digits on, a column holds its doubles whole."""
+TINIEST = 1e-320
+LARGEST_POWER = 308
+POWERS = 10.0 ** np.arange(-LARGEST_POWER, LARGEST_POWER + 1)
 
 
 @dataclass(frozen=True, slots=True)
@@ -41,8 +44,9 @@ class Digits:
         if self.significant >= FULL:
             return EPSILON / 2 * size
         with np.errstate(all="ignore"):
-            leading = np.where(size > 0, np.floor(np.log10(size)), -400.0)
-            step = np.maximum(10.0 ** (leading + 1 - self.significant), 10.0 ** float(-self.decimals))
+            leading = np.floor(np.log10(np.maximum(size, TINIEST))).astype(np.intp)
+        place = np.clip(leading + 1 - self.significant, -LARGEST_POWER, LARGEST_POWER)
+        step = np.maximum(POWERS[place + LARGEST_POWER], 10.0 ** float(np.clip(-self.decimals, -300, 300)))
         return np.maximum(step / 2, EPSILON / 2 * size)
 
 

@@ -61,11 +61,10 @@ def fit(separation: Array, rounding: Array, spacing: str) -> Fit | None:
 def look(facts: TableFacts) -> Iterator[Finding]:
     """Hold the rows against the rule that the table claims, else against every rule."""
     r = facts.rows.separation
+    # The digits that there are: a step may be rounded to them even where the rows keep it exactly.
     rounding = np.maximum(digits(r).rounding(r), facts.rounding["separation"])
-    # The shortest text of an exact step is no rounding; a step may still be rounded to the digits there are.
     claimed = facts.rows.spacing
-    fits = [found for name in ((claimed,) if claimed else SPACINGS) if (found := fit(r, rounding, name)) is not None]
-    best = min(fits, key=lambda found: found.failures, default=None)
+    best = _best(r, rounding, (claimed,) if claimed else SPACINGS)
     unit = facts.units.length.text
     if best is not None and not best.failures:
         return
@@ -81,6 +80,17 @@ def look(facts: TableFacts) -> Iterator[Finding]:
         )
         return
     yield from _flaws(best, r, unit, ERROR if claimed else WARNING)
+
+
+def _best(separation: Array, rounding: Array, names: tuple[str, ...]) -> Fit | None:
+    best: Fit | None = None
+    for name in names:
+        found = fit(separation, rounding, name)
+        if found is not None and (best is None or found.failures < best.failures):
+            best = found
+        if best is not None and not best.failures:
+            break
+    return best
 
 
 def _flaws(best: Fit, r: Array, unit: str, level: str) -> Iterator[Finding]:

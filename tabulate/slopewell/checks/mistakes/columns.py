@@ -11,7 +11,7 @@ from .evidence import Evidence, Explanation, weighted_median
 
 def exchanged(evidence: Evidence) -> Iterator[Explanation]:
     """Read the energy as force and the force as energy."""
-    if evidence.exchanged is None:
+    if evidence.exchanged is None or not _plausible(evidence):
         return
     other = evidence.exchanged()
     for turn in (1.0, -1.0):
@@ -31,6 +31,18 @@ def exchanged(evidence: Evidence) -> Iterator[Explanation]:
             details={} if turn > 0 else {"also": ["force-sign-flipped"]},
             weight=0.5 if turn < 0 else 0.0,
         )
+
+
+def _plausible(evidence: Evidence) -> bool:
+    """Whether the energy column is roughly the slope of the force column, up to its sign."""
+    with np.errstate(all="ignore"):
+        slope = np.diff(evidence.force) / np.diff(evidence.separation)
+        ratio = np.abs(slope / ((evidence.energy[1:] + evidence.energy[:-1]) / 2))
+    told = ratio[np.isfinite(ratio) & (ratio > 0)]
+    if not told.size:
+        return False
+    low, high = np.quantile(told, (0.3, 0.7))
+    return bool(0.7 < low and high < 1.4)
 
 
 def constant_offset(evidence: Evidence) -> Iterator[Explanation]:

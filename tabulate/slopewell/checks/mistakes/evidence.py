@@ -15,9 +15,9 @@ from ...units import UnitSystem
 Array = NDArray[np.float64]
 Numbers = NDArray[np.intp]
 
-CLEAR = 2.0
+CLEAR = 1.5
 """Widths of the band beyond which a single row is a contradiction."""
-MOST_LOOKED_AT = 3000
+MOST_LOOKED_AT = 1000
 """Wrong rows that explanations are tried on first."""
 
 
@@ -64,7 +64,7 @@ class Evidence:
     def wrong(self) -> Numbers:
         """The rows that contradict their slope, if any does so clearly, and those that do not fit their neighbours."""
         found = np.flatnonzero(self.excess > 1.0)
-        clear = found.size and float(self.excess.max()) > CLEAR
+        clear = found.size > 1 or float(self.excess.max(initial=0.0)) > CLEAR
         return np.union1d(found if clear else found[:0], [row for rows in self.spikes.values() for row in rows]).astype(np.intp)
 
     @cached_property

@@ -39,7 +39,7 @@ def fitted(evidence: Evidence, shape: Array) -> Factor | None:
     """Return the factor between the stated forces and some shape times the expected ones."""
     chosen = evidence.sample
     with np.errstate(all="ignore"):
-        base = (shape * evidence.expected)[chosen]
+        base = shape[chosen] * evidence.expected[chosen]
         sharpness = np.abs(evidence.expected[chosen]) / evidence.band[chosen]
         own = np.abs(evidence.force[chosen]) / evidence.rounding[chosen]
         ratio = evidence.force[chosen] / base

@@ -13,6 +13,8 @@ Array = NDArray[np.float64]
 
 FARTHEST = 64
 """Largest offset looked for, in rows."""
+FIRST_LOOK = 60
+"""Wrong rows that every offset is tried on before the best ones are tried on more."""
 MOST_CORRUPTED = 0.05
 """Largest part of the rows that counts as single ones among good ones."""
 
@@ -21,15 +23,12 @@ def offset(evidence: Evidence) -> Iterator[Explanation]:
     """Shift the expected forces by whole and half rows, and keep what fits best."""
     if not evidence.rows:
         return
-    scored = []
     farthest = min(FARTHEST, evidence.force.size // 4)
     columns = _Halves(evidence)
-    for twice in range(-2 * farthest, 2 * farthest + 1):
-        if twice:
-            score = columns.score(twice)
-            if score is not None:
-                scored.append((score, abs(twice), twice))
-    for _, _, twice in sorted(scored)[:2]:
+    every = [twice for twice in range(-2 * farthest, 2 * farthest + 1) if twice]
+    few = evidence.sample[:: max(1, evidence.sample.size // FIRST_LOOK)]
+    promising = columns.best(columns.best(every, few, 12), evidence.sample, 2)
+    for twice in promising:
         for predicted, band in columns.predictions(twice):
             rows = twice / 2
             number = int(rows) if rows == int(rows) else rows
@@ -74,9 +73,15 @@ class _Halves:
             slack = np.abs(quotient) * 1e-9 + (evidence.rounding[:-1] + evidence.rounding[1:]) * 2
         self.middles.append((quotient, slack))
 
-    def score(self, twice: int) -> float | None:
-        """Return the part of the sampled wrong rows that an offset leaves wrong; None where it says too little."""
-        chosen = self.evidence.sample
+    def best(self, offsets: list[int], chosen: NDArray[np.intp], count: int) -> list[int]:
+        """Return the offsets, in half rows, that leave the fewest of some wrong rows wrong."""
+        scored = [
+            (score, abs(twice), twice) for twice in offsets if (score := self._score(twice, chosen)) is not None
+        ]
+        return [twice for _, _, twice in sorted(scored)[:count]]
+
+    def _score(self, twice: int, chosen: NDArray[np.intp]) -> float | None:
+        """Return the part of wrong rows that an offset leaves wrong; None where it says too little."""
         best: float | None = None
         for predicted, band in self.predictions(twice, chosen):
             told = np.isfinite(band)

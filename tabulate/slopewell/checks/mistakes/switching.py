@@ -12,11 +12,13 @@ from .evidence import Evidence, Explanation
 Array = NDArray[np.float64]
 Numbers = NDArray[np.intp]
 
-LEAST_ROWS = 3
-ENDED = 0.35
+LEAST_ROWS, LEAST_SOUND = 2, 3
+ENDED = 0.75
 """Weight of the switch below which it counts as having run to its end within the wrong rows."""
 SOLID = 0.5
 """Part of the rows between the first and the last wrong one that must be wrong: one window, no single rows."""
+FAINT = 0.05
+"""Part of the largest energy in the window below which an energy says nothing of the switch."""
 SLACK = 0.05
 
 
@@ -27,7 +29,7 @@ def slope_missing(evidence: Evidence) -> Iterator[Explanation]:
         return
     first, last = int(wrong[0]), int(wrong[-1])
     told = evidence.band < 0.2 * np.abs(evidence.expected)
-    if np.count_nonzero(told[:first]) < LEAST_ROWS or last >= evidence.live + 2:
+    if np.count_nonzero(told[:first]) < LEAST_SOUND or last >= evidence.live + 2:
         return
     if wrong.size < SOLID * np.count_nonzero(told[first : last + 1]):
         return
@@ -62,8 +64,9 @@ def _of_slope(evidence: Evidence, window: Numbers) -> Array | None:
     # The missing term pulls the switched energy to zero: it has the opposite sign of the energy.
     if not clear.any() or np.mean((gap * energy)[clear] < 0) < 1 - SLACK:
         return None
-    with np.errstate(all="ignore"):
-        rate = np.nan_to_num(gap / energy, nan=0.0, posinf=0.0, neginf=0.0)
+    # Where the energy passes zero its quotient says nothing; the rate is smooth across.
+    told = np.abs(energy) > FAINT * np.abs(energy).max()
+    rate = np.interp(evidence.separation[window], evidence.separation[window][told], gap[told] / energy[told])
     step = np.diff(evidence.separation[window])
     weight: Array = np.exp(np.insert(np.cumsum((rate[1:] + rate[:-1]) / 2 * step), 0, 0.0))
     return weight
@@ -80,7 +83,7 @@ def _of_integral(evidence: Evidence, first: int) -> Array | None:
     slope = np.gradient(force, r)
     area = (force[1:] + force[:-1]) / 2 * step - np.diff(slope) * step**2 / 12
     bare = energy[0] - np.insert(np.cumsum(area), 0, 0.0)
-    told = np.abs(bare) > 0.05 * np.abs(bare).max()
+    told = np.abs(bare) > FAINT * np.abs(bare).max()
     if np.count_nonzero(told) < LEAST_ROWS:
         return None
     weight: Array = energy[told] / bare[told]

@@ -12,6 +12,7 @@ from .document import Document, read_document
 from .outputs import certified_rows
 from .problems import UnusableInput
 from .reports import Report, Subject, certificate_record, potential_landmarks, unusable
+from .reports.origins import pair_records
 from .tables import Reading, check_loaded, is_table, load
 
 Track = Callable[[Iterable[Any], str], Iterator[Any]]
@@ -86,6 +87,7 @@ def check_document(document: Document, *, track: Track = silently) -> tuple[Subj
         findings=tuple(findings),
         landmarks=tuple(landmarks for landmarks, _ in records),
         certificates=tuple(certificate for _, certificate in records if len(certificate) > 2),
+        pairs=pair_records(document),
         checked=tuple(ran),
         title=document.title,
     )

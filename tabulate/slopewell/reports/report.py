@@ -33,6 +33,8 @@ class Subject:
         The checks whose errors were accepted.
     certificates : tuple of dict
         What was proved about the rows of each interaction.
+    pairs : tuple of dict
+        Where each pair of a document comes from.
     problems : tuple of Problem
         Why the file can't be used; then there is nothing else.
     title : str
@@ -46,6 +48,7 @@ class Subject:
     checked: tuple[str, ...] = ()
     accepted: tuple[str, ...] = ()
     certificates: tuple[dict[str, Any], ...] = ()
+    pairs: tuple[dict[str, Any], ...] = ()
     problems: tuple[Problem, ...] = ()
     title: str = ""
 
@@ -70,6 +73,8 @@ class Subject:
         }
         if self.accepted:
             record["accepted"] = list(self.accepted)
+        if self.pairs:
+            record["pairs"] = list(self.pairs)
         if self.certificates:
             record["certificates"] = list(self.certificates)
         return record

@@ -10,6 +10,7 @@ from rich.text import Text
 
 from ..checks import Finding
 from ..problems import Problem
+from .origins import pair_lines
 from .report import Report, Subject
 
 VERDICTS = {"pass": ("passes", "green"), "warn": ("passes with warnings", "yellow"), "fail": ("fails", "red")}
@@ -62,8 +63,11 @@ def print_subject(subject: Subject, console: Console, curves: Curves | None = No
     if subject.title:
         print_indented(Text(subject.title, style="dim"), 2, console)
     certificates = {record["interaction"]: record for record in subject.certificates}
+    pairs = {record["interaction"]: pair_lines(record, subject.landmarks[0]["units"]) for record in subject.pairs}
     for record in subject.landmarks:
         print_landmarks(record, console)
+        for label, value in pairs.get(record["interaction"], []):
+            print_indented(Text(f"{label:<{LABEL_WIDTH}}{value}"), 4, console)
         for label, value in certificate_lines(certificates.get(record["interaction"], {})):
             print_indented(Text(f"{label:<{LABEL_WIDTH}}{value}"), 4, console)
         for line in (curves or {}).get((subject.file, record["interaction"]), ()):

@@ -151,7 +151,7 @@ def _tabulate_sets(options: argparse.Namespace) -> int:
         print(line)
     if done.verdicts.get("unusable"):
         return UNUSABLE
-    failing = {"fail", "warn"} if options.strict else {"fail"}
+    failing = {"fail", "accepted", "warn"} if options.strict else {"fail"}
     return FOUND if failing & set(done.verdicts) else GOOD
 
 

@@ -20,6 +20,9 @@ if TYPE_CHECKING:
 AHEAD = 4
 """Sets that wait at a worker: enough to keep it busy, and no more of them in memory."""
 
+PATIENCE = "10s"
+"""How long a scheduler may take to answer."""
+
 
 def here(job: Job, sets: Iterable[ParameterSet]) -> Generator[Outcome, None, None]:
     """Run sets one after another in this process."""
@@ -111,7 +114,7 @@ def on_cluster(job: Job, sets: Iterable[ParameterSet], address: str) -> Generato
 
         left = iter(sets)
         waiting: dict[Any, ParameterSet] = {}
-        done = as_completed()
+        done = as_completed(loop=client.loop)
 
         def submit(chosen: ParameterSet) -> None:
             key = f"set-{chosen.name}-{job.content(chosen)[:16]}"
@@ -142,7 +145,7 @@ def _client(address: str) -> Any:
         says = f'"{address}" is no address of a Dask scheduler.'
         raise UnusableInput([Problem("--scheduler", says, "Write it like tcp://host:8786.")])
     try:
-        return Client(address, timeout="10s", set_as_default=False)
+        return Client(address, timeout=PATIENCE, set_as_default=False)
     except (OSError, ValueError) as error:
         says = f'No Dask scheduler answers at "{address}": {str(error)[:120] or "it took too long"}.'
         raise UnusableInput(

@@ -22,7 +22,7 @@ from .job import Job, Outcome, make_job
 from .sets import ParameterSet, ParameterSets, check_names, read_sets
 from .store import RECORD, Store
 
-VERDICTS = ("pass", "warn", "fail", "unusable")
+VERDICTS = ("pass", "warn", "accepted", "fail", "unusable")
 HDF5_ENDINGS = (".h5", ".hdf5")
 
 
@@ -36,7 +36,7 @@ class Ensemble:
         The folder of the sets' folders, or the HDF5 file that holds all of them.
     summary : Path
     verdicts : dict
-        How many sets there are of each verdict.
+        How many sets there are of each verdict; ``accepted`` are those that fail but were written.
     before : int
         How many were done by an earlier run.
     """
@@ -164,7 +164,7 @@ def _refuse_clashes(document: Document, places: Places, sets: Path) -> None:
         for target in targets(document, Path()):
             if target.path.parts[0] == RECORD:
                 raise UnusableInput(
-                    [Problem("output", f"{RECORD} is taken.", "Choose another name.")], document.file
+                    [Problem("output", f'"{RECORD}" is taken.', "Choose another name.")], document.file
                 )
 
 

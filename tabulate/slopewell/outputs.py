@@ -96,7 +96,7 @@ def certified_rows(facts: PotentialFacts, units: UnitSystem, *, every_row: bool 
     """
     curve = facts.potential.treated
     rows = tabulate_rows(facts.potential, facts.grid, facts.rows, units)
-    chosen = range(facts.rows) if every_row else rows_to_prove(curve, rows, units)
+    chosen = np.arange(facts.rows) if every_row else rows_to_prove(curve, rows, units)
     certificate: dict[str, Any] = facts.certificate.record(units)
     certificate["rows_proved"] = len(chosen)
     certificate["last_places_off"] = round(last_places_off(curve, rows, units, chosen), 2)

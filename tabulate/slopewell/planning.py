@@ -83,7 +83,9 @@ def plan(
         wanted = stated or interaction.grid.tolerance
         if wanted is None:
             says = f"{interaction.potential.name} has no tolerance to plan for."
-            raise UnusableInput([Problem("grid.tolerance", says, 'Give --tolerance "1e-6 kJ/mol", or one in the grid.')])
+            raise UnusableInput(
+                [Problem("grid.tolerance", says, 'Give --tolerance "1e-6 kJ/mol", or one in the grid.')]
+            )
         plans += plans_of(interaction, document.units, wanted)
     return document, plans
 
@@ -91,7 +93,9 @@ def plan(
 def _energy(text: str) -> Fraction:
     found = quantity(text)
     if found.dimension != dimension("energy") or found.value <= 0:
-        raise UnusableInput([Problem("--tolerance", f'"{text}" is no positive energy.', 'Write it like "1e-6 kJ/mol".')])
+        raise UnusableInput(
+            [Problem("--tolerance", f'"{text}" is no positive energy.', 'Write it like "1e-6 kJ/mol".')]
+        )
     return found.value
 
 
@@ -100,11 +104,19 @@ def plans_of(interaction: Interaction, units: UnitSystem, tolerance: Fraction) -
     bounds = ErrorBounds(interaction.potential.treated, interaction.grid)
     for spacing in SPACINGS:
         for interpolation in INTERPOLATIONS:
-            yield _plan(interaction.potential.name, interaction.grid, bounds, spacing, interpolation, units, tolerance)
+            yield _plan(
+                interaction.potential.name, interaction.grid, bounds, spacing, interpolation, units, tolerance
+            )
 
 
 def _plan(
-    name: str, grid: Grid, bounds: ErrorBounds, spacing: str, interpolation: str, units: UnitSystem, tolerance: Fraction
+    name: str,
+    grid: Grid,
+    bounds: ErrorBounds,
+    spacing: str,
+    interpolation: str,
+    units: UnitSystem,
+    tolerance: Fraction,
 ) -> Plan:
     rows = rows_needed(bounds, spacing, interpolation, grid.ends, float(tolerance), None)
     if rows is None:

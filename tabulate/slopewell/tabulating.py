@@ -61,7 +61,7 @@ def tabulate(
     tables = {units: _rows(facts, units, track) for units in unit_systems(found)}
     digits = tuple(finding for target in found for finding in _digits(target, facts, tables[target.units]))
     subject = replace(subject, findings=subject.findings + digits)
-    # A stored report names the file without its folder, so that the same document gives the same bytes anywhere.
+    # A stored report names the file without its folder: the same document gives the same bytes anywhere.
     stored = Report((replace(subject, file=Path(document.file).name),)).record()
     for target in track(found, "writing"):
         write_target(target, document, tables[target.units], stored)

@@ -3,6 +3,7 @@
 from __future__ import annotations
 
 from collections.abc import Callable, Mapping, Sequence
+from typing import Any
 
 import numpy as np
 from numpy.typing import NDArray
@@ -21,7 +22,7 @@ def _needed(rows: Rows, name: str) -> Array:
     return column
 
 
-QUANTITIES: dict[str, Callable[[Rows], Array]] = {
+QUANTITIES: dict[str, Callable[[Rows], NDArray[Any]]] = {
     "row": lambda rows: np.arange(1, rows.separation.size + 1),
     "separation": lambda rows: rows.separation,
     "separation-squared": lambda rows: rows.separation**2,
@@ -35,7 +36,7 @@ QUANTITIES: dict[str, Callable[[Rows], Array]] = {
 """Each quantity as a function of the rows."""
 
 
-def columns_of(rows: Rows, quantities: Sequence[str]) -> list[Array]:
+def columns_of(rows: Rows, quantities: Sequence[str]) -> list[NDArray[Any]]:
     """Return the columns that quantities name, computed from rows.
 
     Raises

@@ -164,7 +164,11 @@ def replace(tree: Tree, old: Tree, new: Tree) -> Tree:
     match tree:
         case Apply():
             parts = tuple(replace(part, old, new) for part in tree.arguments)
-            return tree if all(a is b for a, b in zip(parts, tree.arguments, strict=True)) else simplify(tree.function, parts)
+            return (
+                tree
+                if all(a is b for a, b in zip(parts, tree.arguments, strict=True))
+                else simplify(tree.function, parts)
+            )
         case Choice():
             left, right, then, otherwise = (replace(part, old, new) for part in children(tree))
             return Choice(tree.comparison, left, right, then, otherwise)

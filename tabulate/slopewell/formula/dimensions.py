@@ -15,7 +15,9 @@ Dimension = Any
 """pint's ``UnitsContainer`` of a quantity's dimensionality."""
 
 
-def dimension(tree: Tree, text: str, known: Mapping[str, Dimension], values: Mapping[str, Fraction]) -> Dimension:
+def dimension(
+    tree: Tree, text: str, known: Mapping[str, Dimension], values: Mapping[str, Fraction]
+) -> Dimension:
     """Return the dimension of a formula.
 
     Parameters
@@ -68,7 +70,8 @@ class _Reading:
             case Apply(function="negate" | "abs"):
                 return self.of(tree.arguments[0])
             case Apply(function="min" | "max"):
-                return self.same(*tree.arguments, tree.place, "compares")
+                one, other = tree.arguments
+                return self.same(one, other, tree.place, "compares")
             case Apply(function="*" | "/"):
                 return self.product(tree)
             case Apply(function="^"):
@@ -87,7 +90,9 @@ class _Reading:
                 total = found
             elif found is not ANY and found != total:
                 says = f"This operator joins {describe(total)} and {describe(found)}."
-                raise FormulaError(self.text, sign, says, "Both sides of + and - must have the same dimension.")
+                raise FormulaError(
+                    self.text, sign, says, "Both sides of + and - must have the same dimension."
+                )
         return total
 
     def same(self, first: Tree, second: Tree, place: Place, verb: str) -> Dimension:
@@ -118,7 +123,9 @@ class _Reading:
         fixed = self.number(exponent)
         if fixed is None:
             says = f"A base that is {describe(found)} needs a fixed number as its exponent."
-            raise FormulaError(self.text, tree.signs[0], says, "Divide the base by a length, say (sigma/r)^n.")
+            raise FormulaError(
+                self.text, tree.signs[0], says, "Divide the base by a length, say (sigma/r)^n."
+            )
         return found ** (int(fixed) if fixed.denominator == 1 else fixed)
 
     def number(self, tree: Tree) -> Fraction | None:
@@ -136,7 +143,10 @@ class _Reading:
         found = self.of(tree)
         if found is not ANY and found != self.one:
             raise FormulaError(
-                self.text, place, f"{says}, but {write(tree)} is {describe(found)}.", "Divide it by its unit or scale."
+                self.text,
+                place,
+                f"{says}, but {write(tree)} is {describe(found)}.",
+                "Divide it by its unit or scale.",
             )
 
 

@@ -156,7 +156,9 @@ def _syntax(text: str, python: str, origin: list[int]) -> ast.expr:
     except SyntaxError as error:
         # Python gives no place where the text ends too early.
         position = origin[min((error.offset or len(origin)) - 1, len(origin) - 1)]
-        says = "The formula can't be read from here on: an operator, a number, a name or a bracket is missing."
+        says = (
+            "The formula can't be read from here on: an operator, a number, a name or a bracket is missing."
+        )
         raise FormulaError(
             text, (position, position + 1), says, "Write every product with *, close every bracket."
         ) from None
@@ -213,11 +215,15 @@ class _Parser:
                 return self.call(node)
             case ast.Compare():
                 raise self.refuse(
-                    node, "A comparison stands only inside where(…).", "Write where(a < b, value if so, else)."
+                    node,
+                    "A comparison stands only inside where(…).",
+                    "Write where(a < b, value if so, else).",
                 )
             case _:
                 raise self.refuse(
-                    node, "This is no part of the formula language.", "Use numbers, names, + - * / ^ and functions."
+                    node,
+                    "This is no part of the formula language.",
+                    "Use numbers, names, + - * / ^ and functions.",
                 )
 
     def operator(self, node: ast.BinOp) -> Place:
@@ -269,7 +275,9 @@ class _Parser:
         exponent = self.read(node.right)
         if isinstance(exponent, Number) and abs(exponent.value) > LARGEST_EXPONENT:
             raise self.refuse(
-                node.right, f"The exponent is larger than {LARGEST_EXPONENT}.", "Use a smaller power or exp(…)."
+                node.right,
+                f"The exponent is larger than {LARGEST_EXPONENT}.",
+                "Use a smaller power or exp(…).",
             )
         return self.binary("^", node, exponent)
 
@@ -280,7 +288,9 @@ class _Parser:
             raise self.refuse(node.func, f'There is no function "{name}".', nearest(name, FUNCTIONS))
         wanted, given = FUNCTIONS[name], len(node.args)
         if node.keywords:
-            raise self.refuse(node.keywords[0], "An argument has no name here.", f"Write {name}(…) with values.")
+            raise self.refuse(
+                node.keywords[0], "An argument has no name here.", f"Write {name}(…) with values."
+            )
         if given != wanted:
             says = f"{name} takes {wanted} argument{'s' if wanted > 1 else ''}, not {given}."
             raise self.refuse(node, says, f"Mend {name}(…).")
@@ -294,7 +304,9 @@ class _Parser:
     def check_order(self, node: ast.expr, order: Tree) -> None:
         if not (isinstance(order, Number) and order.value.denominator == 1 and 0 <= order.value <= 60):
             raise self.refuse(
-                node, "The order of tang_toennies must be a whole number from 0 to 60.", "Write tang_toennies(6, b*r)."
+                node,
+                "The order of tang_toennies must be a whole number from 0 to 60.",
+                "Write tang_toennies(6, b*r).",
             )
 
     def choice(self, node: ast.Call) -> Tree:
@@ -305,4 +317,6 @@ class _Parser:
         if comparison is None:
             raise self.refuse(condition, "Only < <= > >= compare.", "Write where(a < b, x, y).")
         left, right = self.read(condition.left), self.read(condition.comparators[0])
-        return Choice(comparison, left, right, self.read(node.args[1]), self.read(node.args[2]), self.place(node))
+        return Choice(
+            comparison, left, right, self.read(node.args[1]), self.read(node.args[2]), self.place(node)
+        )

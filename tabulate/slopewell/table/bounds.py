@@ -11,15 +11,22 @@ from math import inf, isfinite
 
 from ..document import Grid
 from ..potential import Curve, Potential
-from .edges import EdgeBound, edge_bounds
+from .direct import interval_bound
+from .edges import edge_bounds
 from .profile import Stretch, first_stretches
-from .rules import RULES, SLOPE_IN_ENERGY, SLOPE_IN_FORCE, Rule
+from .rules import RULES, SLOPE_IN_ENERGY, SLOPE_IN_FORCE, Rule, Term
 from .spacing import Spacing
 from .spline import NO_SLOPE_ERRORS, SlopeErrors, residuals, slope_errors
 
 SHARP = 1.02
 """A bound this close to the size that is certainly reached is not refined further."""
 MOST_CUTS = 400
+MOST_DIRECT = 6
+"""Row intervals whose error is enclosed directly at most."""
+COARSE = 0.05
+"""Length of a row interval, against its separation, from which on its error is enclosed directly."""
+FINEST = 8
+"""Part of half a row interval below which a stretch is not cut: the interval is what counts then."""
 STORED = 2.0**-50
 """Relative rounding of a stored number, against the size of the terms it is made of."""
 
@@ -67,8 +74,8 @@ class Bound:
         return isfinite(self.energy) and isfinite(self.force) and isfinite(self.drift)
 
 
-Size = Callable[[Stretch, Spacing], tuple[float, float]]
-"""The bound that a stretch brings, and what is certainly reached about its middle."""
+Size = Callable[[int], tuple[float, float]]
+"""From the number of a stretch to the bound that it brings, and what is reached about its middle."""
 
 
 class ErrorBounds:
@@ -79,7 +86,9 @@ class ErrorBounds:
         self.grid = grid
         self.stretches = first_stretches(curve, grid.start, grid.end)
 
-    def bound(self, rows: int, spacing: str, rule_name: str, ends: str = "clamped", rounding: Rounding = EXACT) -> Bound:
+    def bound(
+        self, rows: int, spacing: str, rule_name: str, ends: str = "clamped", rounding: Rounding = EXACT
+    ) -> Bound:
         """Return the error bounds of a table of so many rows.
 
         Parameters
@@ -90,94 +99,138 @@ class ErrorBounds:
         rounding : Rounding, optional
             Of the digits that a text layout prints.
         """
-        rule = RULES[rule_name]
-        grid = Spacing(float(self.grid.start), float(self.grid.end), rows, spacing)
-        slopes = self.slopes(grid, ends) if rule_name == "cubic-spline" else NO_SLOPE_ERRORS
-        energy, energy_at = self.largest(grid, self.energy_size(rule, slopes, rounding))
-        force, force_at = self.largest(grid, self.force_size(rule, slopes, rounding))
-        drift = self.largest(grid, self.drift_size(rule))[0] if rule.drift else 0.0
-        for edge in edge_bounds(self.curve, grid, rule, (energy, force)):
-            energy, energy_at = _larger(energy, energy_at, edge.energy + SLOPE_IN_ENERGY * edge.length * slopes.about(edge.at, edge.at), edge)
-            force, force_at = _larger(force, force_at, edge.force + SLOPE_IN_FORCE * slopes.about(edge.at, edge.at), edge)
+        rule, grid, slopes = self._setting(rows, spacing, rule_name, ends)
+        energy = self.cut_until_sharp(grid, self.energy_size(grid, rule, slopes, rounding))
+        force = self.cut_until_sharp(grid, self.force_size(grid, rule, slopes, rounding))
+        drift = self.cut_until_sharp(grid, self.drift_size(grid, rule.drift))[0] if rule.drift else 0.0
+        for edge in edge_bounds(self.curve, grid, rule, (energy[0], force[0])):
+            off = slopes.about(edge.at, edge.at)
+            energy = max(energy, (edge.energy + SLOPE_IN_ENERGY * edge.length * off, edge.at))
+            force = max(force, (edge.force + SLOPE_IN_FORCE * off, edge.at))
             drift = max(drift, edge.drift if rule.drift else 0.0)
-        return Bound(energy, energy_at, force, force_at, drift)
+        return Bound(*energy, *force, drift)
 
     def energy_bound(self, rows: int, spacing: str, rule_name: str, ends: str = "clamped") -> float:
         """Return the bound of the energy error alone, which a search for a row count asks for often."""
-        rule = RULES[rule_name]
-        grid = Spacing(float(self.grid.start), float(self.grid.end), rows, spacing)
-        slopes = self.slopes(grid, ends) if rule_name == "cubic-spline" else NO_SLOPE_ERRORS
-        energy, _ = self.largest(grid, self.energy_size(rule, slopes, EXACT))
+        rule, grid, slopes = self._setting(rows, spacing, rule_name, ends)
+        energy, _ = self.cut_until_sharp(grid, self.energy_size(grid, rule, slopes, EXACT))
         for edge in edge_bounds(self.curve, grid, rule, (energy, inf)):
             energy = max(energy, edge.energy + SLOPE_IN_ENERGY * edge.length * slopes.about(edge.at, edge.at))
         return energy
 
-    def largest(self, grid: Spacing, size: Size) -> tuple[float, float]:
-        """Return the largest size over all stretches and where it lies, cutting stretches until it is sharp."""
-        sizes = [size(part, grid) for part in self.stretches]
+    def _setting(
+        self, rows: int, spacing: str, rule_name: str, ends: str
+    ) -> tuple[Rule, Spacing, SlopeErrors]:
+        grid = Spacing(float(self.grid.start), float(self.grid.end), rows, spacing)
+        slopes = self.slopes(grid, ends) if rule_name == "cubic-spline" else NO_SLOPE_ERRORS
+        return RULES[rule_name], grid, slopes
+
+    def cut_until_sharp(self, grid: Spacing, size: Size) -> tuple[float, float]:
+        """Return the largest size and where it lies, cutting stretches until it is sharp."""
+        sizes = [size(index) for index in range(len(self.stretches))]
         reached = max((low for _, low in sizes), default=0.0)
         for _ in range(MOST_CUTS):
             top = max(range(len(sizes)), key=sizes.__getitem__)
-            part = self.stretches[top]
-            if sizes[top][0] <= SHARP * reached or part.high - part.low < 1e-4 * part.high:
+            if sizes[top][0] <= SHARP * reached:
                 break
-            halves = part.halves()
-            self.stretches[top : top + 1] = halves
-            sizes[top : top + 1] = [size(half, grid) for half in halves]
-            reached = max(reached, sizes[top][1], sizes[top + 1][1])
+            reach = grid.at((self.stretches[top].low + self.stretches[top].high) / 2) / 2
+            near = [top, *self._beside(top, reach)]
+            widest = max(near, key=lambda index: self.stretches[index].high - self.stretches[index].low)
+            part = self.stretches[widest]
+            if part.high - part.low < max(reach / FINEST, 1e-6 * part.high):
+                break
+            self.stretches[widest : widest + 1] = part.halves()
+            sizes[widest : widest + 1] = [(0.0, 0.0), (0.0, 0.0)]
+            for index in {i + (i > widest) for i in near} | {widest, widest + 1}:
+                sizes[index] = size(index)
+                reached = max(reached, sizes[index][1])
         top = max(range(len(sizes)), key=sizes.__getitem__)
         part = self.stretches[top]
         return sizes[top][0], (part.low + part.high) / 2
 
-    def energy_size(self, rule: Rule, slopes: SlopeErrors, rounding: Rounding) -> Size:
-        """Return the size of the energy error."""
+    def energy_size(self, grid: Spacing, rule: Rule, slopes: SlopeErrors, rounding: Rounding) -> Size:
+        """Return the size of the energy error on the intervals whose middle lies in a stretch."""
 
-        def size(part: Stretch, grid: Spacing) -> tuple[float, float]:
-            h = grid.longest(part.low, part.high)
-            added = SLOPE_IN_ENERGY * h * slopes.about(part.low, part.high)
-            return tuple(  # type: ignore[return-value]
-                rule.energy.size(h, sizes[rule.energy.order])
-                + added
-                + _energy_rounding(sizes, part, h, rounding, rule)
-                for sizes in (part.largest, part.middle)
-            )
+        def added(part: Stretch, h: float) -> float:
+            rounded = _energy_rounding(part.largest, part, h, rounding, rule)
+            return SLOPE_IN_ENERGY * h * slopes.about(part.low, part.high) + rounded
+
+        return self._size(grid, rule, rule.energy, added)
+
+    def force_size(self, grid: Spacing, rule: Rule, slopes: SlopeErrors, rounding: Rounding) -> Size:
+        """Return the size of the force error on the intervals whose middle lies in a stretch."""
+
+        def added(part: Stretch, h: float) -> float:
+            rounded = _force_rounding(part.largest, part, h, rounding, rule)
+            return SLOPE_IN_FORCE * slopes.about(part.low, part.high) + rounded
+
+        return self._size(grid, rule, rule.force, added)
+
+    def _size(self, grid: Spacing, rule: Rule, term: Term, added: Callable[[Stretch, float], float]) -> Size:
+        which = 0 if term is rule.energy else 1
+        directly: dict[int, float] = {}
+
+        def size(index: int) -> tuple[float, float]:
+            part = self.stretches[index]
+            first, last = grid.centred(part.low, part.high)
+            if not (h := grid.longest_of(first, last)):
+                return 0.0, 0.0
+            bound, beside = self._term_size(term, index, h), added(part, h)
+            if first == last and h > COARSE * part.low and (first in directly or len(directly) < MOST_DIRECT):
+                if first not in directly:
+                    interval = grid.row(first), grid.row(first + 1)
+                    directly[first] = interval_bound(self.curve, *interval, rule)[which]
+                bound = min(bound, directly[first])
+            return bound + beside, min(self._reached(term, part, grid), bound) + beside
 
         return size
 
-    def force_size(self, rule: Rule, slopes: SlopeErrors, rounding: Rounding) -> Size:
-        """Return the size of the force error."""
-
-        def size(part: Stretch, grid: Spacing) -> tuple[float, float]:
-            h = grid.longest(part.low, part.high)
-            added = SLOPE_IN_FORCE * slopes.about(part.low, part.high)
-            return tuple(  # type: ignore[return-value]
-                rule.force.size(h, sizes[rule.force.order]) + added + _force_rounding(sizes, part, h, rounding, rule)
-                for sizes in (part.largest, part.middle)
-            )
-
-        return size
-
-    def drift_size(self, rule: Rule) -> Size:
+    def drift_size(self, grid: Spacing, term: Term) -> Size:
         """Return the size of the distance between the force read and the slope of the energy read."""
 
-        def size(part: Stretch, grid: Spacing) -> tuple[float, float]:
-            assert rule.drift is not None
-            h, order = grid.longest(part.low, part.high), rule.drift.order
-            return rule.drift.size(h, part.largest[order]), rule.drift.size(h, part.middle[order])
+        def size(index: int) -> tuple[float, float]:
+            part = self.stretches[index]
+            h = grid.longest_of(*grid.centred(part.low, part.high))
+            return self._term_size(term, index, h), self._reached(term, part, grid)
 
         return size
+
+    def _reached(self, term: Term, part: Stretch, grid: Spacing) -> float:
+        return term.plain(grid.at((part.low + part.high) / 2), part.middle[term.order])
+
+    def _term_size(self, term: Term, index: int, h: float) -> float:
+        part = self.stretches[index]
+        rest = self._largest_about(index, h / 2, term.order + 2)
+        return term.size(h, part.largest[term.order], part.largest[term.order + 1], rest)
+
+    def _largest_about(self, index: int, reach: float, order: int) -> float:
+        """Return the largest derivative on a stretch and so far beyond its ends, on the same piece."""
+        return max(self.stretches[i].largest[order] for i in (index, *self._beside(index, reach)))
+
+    def _beside(self, index: int, reach: float) -> list[int]:
+        """Return the numbers of the stretches so near to one, on the same piece."""
+        part = self.stretches[index]
+        near = []
+        for step in (-1, 1):
+            other = index + step
+            while 0 <= other < len(self.stretches):
+                beside = self.stretches[other]
+                apart = part.low - beside.high if step < 0 else beside.low - part.high
+                if beside.piece is not part.piece or apart >= reach:
+                    break
+                near.append(other)
+                other += step
+        return near
 
     def slopes(self, grid: Spacing, ends: str) -> SlopeErrors:
         """Return bounds on the errors of a cubic spline's slopes at its knots."""
-        self.largest(grid, residuals)
+        self.cut_until_sharp(grid, lambda index: residuals(self.stretches[index], grid))
         return slope_errors(self.curve, grid, ends, self.stretches)
 
 
-def _larger(value: float, at: float, other: float, edge: EdgeBound) -> tuple[float, float]:
-    return (other, edge.at) if other > value else (value, at)
-
-
-def _energy_rounding(derivatives: tuple[float, ...], part: Stretch, h: float, rounding: Rounding, rule: Rule) -> float:
+def _energy_rounding(
+    derivatives: tuple[float, ...], part: Stretch, h: float, rounding: Rounding, rule: Rule
+) -> float:
     energy, force = derivatives[0], derivatives[1]
     stored = STORED * (energy + part.high * force)
     printed = rounding.energy_relative * energy + rounding.energy_absolute
@@ -188,7 +241,9 @@ def _energy_rounding(derivatives: tuple[float, ...], part: Stretch, h: float, ro
     return stored + printed + moved + slopes
 
 
-def _force_rounding(derivatives: tuple[float, ...], part: Stretch, h: float, rounding: Rounding, rule: Rule) -> float:
+def _force_rounding(
+    derivatives: tuple[float, ...], part: Stretch, h: float, rounding: Rounding, rule: Rule
+) -> float:
     energy, force, stiffness = derivatives[:3]
     stored = STORED * (force + part.high * stiffness)
     printed = rounding.force_relative * force + rounding.force_absolute

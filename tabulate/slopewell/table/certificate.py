@@ -34,7 +34,7 @@ class Certificate:
     repulsive_to_first_row: bool
 
     def record(self, units: UnitSystem) -> dict[str, Any]:
-        """Return the certificate as plain values in the given units; a bound that was not found is left out."""
+        """Return the certificate as plain values in the given units, without a bound that was not found."""
         length, energy, force = (float(u.factor) for u in (units.length, units.energy, units.force))
         record: dict[str, Any] = {
             "rows": self.rows,

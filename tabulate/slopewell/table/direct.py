@@ -3,6 +3,7 @@
 from __future__ import annotations
 
 from fractions import Fraction
+from itertools import pairwise
 from math import factorial, inf
 
 from ..formula.balls import ball, enclose, fraction, series, stretch
@@ -12,8 +13,10 @@ from ..potential import Curve
 from .rules import Rule
 from .spacing import Spacing
 
-CUTS = 12
+CUTS = 8
 """Stretches that each part of the interval is cut into."""
+EXPANSION = 7
+"""Orders of Taylor's expansion in which the curve and its interpolant cancel exactly."""
 
 HERMITE = {
     2: [[Fraction(1), Fraction(-1)], [Fraction(0), Fraction(1)]],
@@ -43,13 +46,17 @@ def direct_bound(curve: Curve, edge: float, grid: Spacing, rule: Rule) -> tuple[
         step = 1e-6 * grid.longest(edge, edge)
         places = [edge - step, edge + step]
     for low, high in {grid.around(place) for place in places}:
-        found = _interval(curve, low, high, rule)
+        found = interval_bound(curve, low, high, rule)
         energy, force = max(energy, found[0]), max(force, found[1])
     return energy, force
 
 
-def _interval(curve: Curve, low: float, high: float, rule: Rule) -> tuple[float, float]:
-    at_rows = [_derivatives(curve, r, len(rule.energy_basis) - 1 if rule.name != "linear" else 1) for r in (low, high)]
+def interval_bound(curve: Curve, low: float, high: float, rule: Rule) -> tuple[float, float]:
+    """Bound the errors of energy and force on one row interval, a spline read by the curve's own slopes."""
+    at_rows = [
+        _derivatives(curve, r, len(rule.energy_basis) - 1 if rule.name != "linear" else 1)
+        for r in (low, high)
+    ]
     if rule.name == "linear":
         chord = _interpolant([[d[0]] for d in at_rows], low, high)
         slopes = _interpolant([[d[1]] for d in at_rows], low, high)
@@ -75,7 +82,9 @@ def _interpolant(at_rows: list[list[Fraction]], low: float, high: float) -> Tree
     return polynomial(coefficients, multiply(number(1 / h), add(R, negate(number(low)))))
 
 
-def _largest(curve: Curve, low: float, high: float, read: Tree, order: int, *, differentiate: bool = False) -> float:
+def _largest(
+    curve: Curve, low: float, high: float, read: Tree, order: int, *, differentiate: bool = False
+) -> float:
     """Bound the difference between a derivative of the curve and what is read for it."""
     largest = 0.0
     for piece in curve.pieces:
@@ -83,11 +92,12 @@ def _largest(curve: Curve, low: float, high: float, read: Tree, order: int, *, d
         if start >= end:
             continue
         cuts = [start + (end - start) * k / CUTS for k in range(CUTS)] + [end]
-        for a, b in zip(cuts, cuts[1:], strict=False):
+        for a, b in pairwise(cuts):
             part = stretch(a, b)
             if order == 0 or differentiate:
-                error = enclose(simplify("+", (piece.tree, simplify("negate", (read,)))), part, order)[order]
+                gap = simplify("+", (piece.tree, simplify("negate", (read,))))
+                error = enclose(gap, part, order, EXPANSION)[order]
             else:
-                error = enclose(piece.tree, part, order)[order] - enclose(read, part, 0)[0]
+                error = enclose(piece.tree, part, order, EXPANSION)[order] - enclose(read, part, 0)[0]
             largest = max(largest, float(abs(error).upper()) if error.is_finite() else inf)
     return largest

@@ -51,7 +51,9 @@ def edge_bounds(curve: Curve, grid: Spacing, rule: Rule, largest: tuple[float, f
             continue
         if found.energy > largest[0] or found.force > largest[1]:
             energy, force = direct_bound(curve, found.at, grid, rule)
-            found = EdgeBound(found.at, found.length, min(found.energy, energy), min(found.force, force), found.drift)
+            found = EdgeBound(
+                found.at, found.length, min(found.energy, energy), min(found.force, force), found.drift
+            )
         yield found
 
 
@@ -68,7 +70,9 @@ def _bound_at(before: Piece, after: Piece, grid: Spacing, rule: Rule) -> EdgeBou
             base, other = before, after
         return _row_mismatch(edge, interval, base, other, rule)
     interval = grid.around(edge)
-    choices = [_split(edge, interval, base, other, rule) for base, other in ((before, after), (after, before))]
+    choices = [
+        _split(edge, interval, base, other, rule) for base, other in ((before, after), (after, before))
+    ]
     return min(choices, key=lambda bound: bound.energy)
 
 
@@ -76,7 +80,9 @@ def _difference(base: Piece, other: Piece) -> Tree:
     return simplify("+", (other.tree, simplify("negate", (base.tree,))))
 
 
-def _row_mismatch(edge: float, interval: tuple[float, float], base: Piece, other: Piece, rule: Rule) -> EdgeBound:
+def _row_mismatch(
+    edge: float, interval: tuple[float, float], base: Piece, other: Piece, rule: Rule
+) -> EdgeBound:
     """Bound an interval whose one row has the values of the other piece."""
     h = interval[1] - interval[0]
     energy, force, drift = _smooth(base, interval, h, rule)
@@ -106,8 +112,12 @@ def _split(edge: float, interval: tuple[float, float], base: Piece, other: Piece
 def _smooth(base: Piece, interval: tuple[float, float], h: float, rule: Rule) -> tuple[float, float, float]:
     """Return the rule's own bounds for a piece continued over the whole interval."""
     largest = measure(base, *interval).largest
-    drift = rule.drift.size(h, largest[rule.drift.order]) if rule.drift else 0.0
-    return rule.energy.size(h, largest[rule.energy.order]), rule.force.size(h, largest[rule.force.order]), drift
+    drift = rule.drift.plain(h, largest[rule.drift.order]) if rule.drift else 0.0
+    return (
+        rule.energy.plain(h, largest[rule.energy.order]),
+        rule.force.plain(h, largest[rule.force.order]),
+        drift,
+    )
 
 
 def _sizes(coefficients: list[Ball]) -> list[float]:

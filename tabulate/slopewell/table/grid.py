@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+from collections.abc import Callable
 from fractions import Fraction
 
 import numpy as np
@@ -84,12 +85,15 @@ RULES = {
 }
 
 
+VARIABLES: dict[str, Callable[[Array], Array]] = {
+    "separation": lambda r: r,
+    "separation-squared": np.square,
+    "inverse": np.reciprocal,
+    "logarithmic": np.log,
+}
+
+
 def variable(separation: Array, spacing: str) -> Array:
     """Return what the rows of a spacing are even in."""
     with np.errstate(all="ignore"):
-        return {
-            "separation": lambda r: r,
-            "separation-squared": np.square,
-            "inverse": np.reciprocal,
-            "logarithmic": np.log,
-        }[spacing](separation)
+        return VARIABLES[spacing](separation)

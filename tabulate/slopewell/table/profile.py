@@ -8,14 +8,15 @@ from __future__ import annotations
 
 from dataclasses import dataclass
 from fractions import Fraction
+from itertools import pairwise
 from math import factorial, inf, isfinite
 
-from ..formula.balls import ball, enclose, series, stretch
+from ..formula.balls import Ball, ball, enclose, series, stretch
 from ..formula.branches import Piece
 from ..formula.tree import ZERO
 from ..potential import Curve
 
-ORDER = 6
+ORDER = 8
 """The highest derivative that any interpolation rule needs."""
 FIRST_STRETCHES = 6
 """Stretches a piece is cut into at first."""
@@ -30,11 +31,9 @@ class Stretch:
     low, high : float
     piece : Piece
     largest : tuple of float
-        Proved upper bounds of |U⁽ᵏ⁾|, k = 0 … 6, in eV/Åᵏ; infinite where balls find none.
+        Proved upper bounds of |U⁽ᵏ⁾|, k = 0 … 8, in eV/Åᵏ; infinite where balls find none.
     middle : tuple of float
         |U⁽ᵏ⁾| at the middle.
-    range : (float, float)
-        Proved bounds of U⁗ with its sign.
     """
 
     low: float
@@ -42,7 +41,6 @@ class Stretch:
     piece: Piece
     largest: tuple[float, ...]
     middle: tuple[float, ...]
-    range: tuple[float, float]
 
     def halves(self) -> tuple[Stretch, Stretch]:
         """Cut the stretch in two."""
@@ -54,22 +52,20 @@ def measure(piece: Piece, low: float, high: float) -> Stretch:
     """Return the stretch between two separations of a piece, with the sizes of its derivatives."""
     if piece.tree == ZERO:
         zeros = (0.0,) * (ORDER + 1)
-        return Stretch(low, high, piece, zeros, zeros, (0.0, 0.0))
+        return Stretch(low, high, piece, zeros, zeros)
     wide = enclose(piece.tree, stretch(low, high), ORDER)
     thin = series(piece.tree, ball((low + high) / 2), ORDER)
-    fourth = wide[4] * factorial(4)
     return Stretch(
         low,
         high,
         piece,
         tuple(_upper(c) * factorial(k) for k, c in enumerate(wide)),
         tuple(abs(float(c.mid())) * factorial(k) if c.is_finite() else 0.0 for k, c in enumerate(thin)),
-        (float(fourth.lower()), float(fourth.upper())) if fourth.is_finite() else (-inf, inf),
     )
 
 
-def _upper(coefficient: object) -> float:
-    size = float(abs(coefficient).upper()) if coefficient.is_finite() else inf  # type: ignore[attr-defined,operator]
+def _upper(coefficient: Ball) -> float:
+    size = float(abs(coefficient).upper()) if coefficient.is_finite() else inf
     return size * (1 + 1e-15) if isfinite(size) else inf
 
 
@@ -80,5 +76,5 @@ def first_stretches(curve: Curve, start: Fraction, end: Fraction) -> list[Stretc
         low, high = float(piece.start), float(piece.end)
         ratio = (high / low) ** (1 / FIRST_STRETCHES)
         cuts = [low * ratio**k for k in range(FIRST_STRETCHES)] + [high]
-        found += [measure(piece, a, b) for a, b in zip(cuts, cuts[1:], strict=False)]
+        found += [measure(piece, a, b) for a, b in pairwise(cuts)]
     return found

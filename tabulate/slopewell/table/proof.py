@@ -20,7 +20,7 @@ PROVED_ROWS = 200
 
 
 def rows_to_prove(curve: Curve, rows: Rows, units: UnitSystem) -> NDArray[np.intp]:
-    """Return the numbers of the rows that are proved when a table is written: evenly spread, with every edge."""
+    """Return the numbers of the rows proved as a table is written: evenly spread, with every edge."""
     count = rows.separation.size
     spread = np.linspace(0, count - 1, min(count, PROVED_ROWS)).round()
     edges = np.searchsorted(rows.separation, [float(edge / units.length.factor) for edge in curve.edges()])

@@ -15,7 +15,12 @@ FEWEST_ROWS = {"linear": 2, "cubic-hermite": 2, "quintic-hermite": 2, "cubic-spl
 
 
 def rows_needed(
-    bounds: ErrorBounds, spacing: str, interpolation: str, ends: str, energy: float | None, force: float | None
+    bounds: ErrorBounds,
+    spacing: str,
+    interpolation: str,
+    ends: str,
+    energy: float | None,
+    force: float | None,
 ) -> int | None:
     """Return the smallest row count whose proved bounds keep tolerances.
 
@@ -41,7 +46,9 @@ def rows_needed(
         return worst
 
     rule = RULES[interpolation]
-    return smallest(excess, FEWEST_ROWS[interpolation], rule.energy.power if force is None else rule.force.power)
+    return smallest(
+        excess, FEWEST_ROWS[interpolation], rule.energy.power if force is None else rule.force.power
+    )
 
 
 def smallest(excess: Callable[[int], float], fewest: int, power: int) -> int | None:
@@ -88,7 +95,11 @@ def row_count(bounds: ErrorBounds, grid: Grid, name: str) -> int:
     force = None if grid.force_tolerance is None else float(grid.force_tolerance)
     rows = rows_needed(bounds, grid.spacing, grid.interpolation, grid.ends, energy, force)
     if rows is None:
-        says = f"No table of up to {MOST_ROWS:,} rows keeps the tolerance for {name}: it is below the rounding of doubles, "
-        says += "or the curve jumps or has no bound."
-        raise UnusableInput([Problem("grid.tolerance", says, "Allow more, or choose another interpolation rule.")])
+        says = (
+            f"No table of up to {MOST_ROWS:,} rows keeps the tolerance for {name}: it is below the rounding "
+            "of doubles, or the curve jumps or has no bound."
+        )
+        raise UnusableInput(
+            [Problem("grid.tolerance", says, "Allow more, or choose another interpolation rule.")]
+        )
     return rows

@@ -14,15 +14,49 @@ from math import sqrt
 
 @dataclass(frozen=True, slots=True)
 class Term:
-    """A bound constant·hᵖᵒʷᵉʳ·max|U⁽ᵒʳᵈᵉʳ⁾|."""
+    """A bound constant·hᵖᵒʷᵉʳ·|U⁽ᵒʳᵈᵉʳ⁾| on one interval.
+
+    The derivative is taken at the middle of the interval: its slope across the interval moves the error
+    sideways rather than making it larger, so that it counts in second order (``tilt``) or with a small
+    share (``slant``), and what is left of it counts in full.
+
+    Attributes
+    ----------
+    constant, power, order : float, int, int
+    tilt : int
+        k where the leading error has the shape (1 − u²)ᵏ on the interval; 0 where it has another.
+    slant : float
+        Where ``tilt`` is 0: what h·|U⁽ᵒʳᵈᵉʳ⁺¹⁾| adds to the derivative.
+    """
 
     constant: float
     power: int
     order: int
+    tilt: int = 0
+    slant: float = 0.0
 
-    def size(self, h: float, derivative: float) -> float:
-        """Return the bound for an interval length and the largest derivative."""
+    def plain(self, h: float, derivative: float) -> float:
+        """Return the bound for the largest derivative on an interval."""
         return self.constant * h**self.power * derivative
+
+    def size(self, h: float, middle: float, slope: float, rest: float) -> float:
+        """Return the bound from the derivative at the middle, and its slope and curvature on the interval.
+
+        With the shape (1 − u²)ᵏ ≤ 1/(1 + k u²) the largest of (1 − u²)ᵏ (m + s u) is at most
+        (m + √(m² + s²/k))/2, where s = h·slope/(2 (order + 1)); for the force of ``linear`` the
+        interpolated curve is U′.
+        """
+        if self.tilt:
+            sideways = h * slope / (2 * (self.order_of_shape + 1))
+            led = (middle + sqrt(middle**2 + sideways**2 / self.tilt)) / 2
+        else:
+            led = middle + self.slant * h * slope
+        return self.plain(h, led + h**2 / 8 * rest)
+
+    @property
+    def order_of_shape(self) -> int:
+        """The degree of the polynomial (1 − u²)ᵏ."""
+        return 2 * self.tilt
 
 
 @dataclass(frozen=True, slots=True)
@@ -58,21 +92,28 @@ class Rule:
         return max(self.energy.order, self.force.order)
 
 
+CUBIC = (Term(1 / 384, 4, 4, 2), Term(sqrt(3) / 216, 3, 4, 0, 216 / sqrt(3) / 1920))
+"""Energy and force of a cubic from values and slopes at both ends."""
+
 RULES = {
     rule.name: rule
     for rule in (
-        Rule("linear", 3, Term(1 / 8, 2, 2), Term(1 / 8, 2, 3), Term(1 / 2, 1, 2), (1.0,), (1.0,)),
         Rule(
-            "cubic-hermite", 3, Term(1 / 384, 4, 4), Term(sqrt(3) / 216, 3, 4), None, (1.0, 4 / 27), (1.5, 1.0)
+            "linear",
+            3,
+            Term(1 / 8, 2, 2, 1),
+            Term(1 / 8, 2, 3, 1),
+            Term(1 / 2, 1, 2, 0, 1 / 6),
+            (1.0,),
+            (1.0,),
         ),
-        Rule(
-            "cubic-spline", 3, Term(1 / 384, 4, 4), Term(sqrt(3) / 216, 3, 4), None, (1.0, 4 / 27), (1.5, 1.0)
-        ),
+        Rule("cubic-hermite", 3, *CUBIC, None, (1.0, 4 / 27), (1.5, 1.0)),
+        Rule("cubic-spline", 3, *CUBIC, None, (1.0, 4 / 27), (1.5, 1.0)),
         Rule(
             "quintic-hermite",
             4,
-            Term(1 / 46080, 6, 6),
-            Term(sqrt(5) / 30000, 5, 6),
+            Term(1 / 46080, 6, 6, 3),
+            Term(sqrt(5) / 30000, 5, 6, 0, 30000 / sqrt(5) / 322560),
             None,
             (1.0, 0.2, 0.0173),
             (1.875, 1.0, 0.07),

@@ -56,8 +56,31 @@ class Spacing:
             return (self.end - self.start) / (self.rows - 1) * (1 + SLACK)
         # Intervals shrink outwards in r² and grow outwards in the other rules.
         at = self.position(low) - 1e-6 if self.rule == "separation-squared" else self.position(high) + 1e-6
-        index = min(max(floor(at), 0), self.rows - 2)
-        return (self.row(index + 1) - self.row(index)) * (1 + SLACK)
+        return self._length(floor(at))
+
+    def centred(self, low: float, high: float) -> tuple[int, int]:
+        """Return the first and last row interval whose middle lies in a stretch; none if they are crossed."""
+        first, last = (floor(self.position(edge)) for edge in (low, high))
+        first += self._middle(first) < low * (1 - SLACK)
+        last -= self._middle(last) > high * (1 + SLACK)
+        return min(max(first, 0), self.rows - 2), min(max(last, 0), self.rows - 2)
+
+    def longest_of(self, first: int, last: int) -> float:
+        """Return the length of the longest of some row intervals; 0 if there are none."""
+        if first > last:
+            return 0.0
+        return self._length(first if self.rule == "separation-squared" else last)
+
+    def at(self, r: float) -> float:
+        """Return the length of the row interval that holds a separation."""
+        return self._length(floor(self.position(r)))
+
+    def _middle(self, index: int) -> float:
+        return (self.row(index) + self.row(index + 1)) / 2
+
+    def _length(self, index: int) -> float:
+        inside = min(max(index, 0), self.rows - 2)
+        return (self.row(inside + 1) - self.row(inside)) * (1 + SLACK)
 
     def unevenness(self, low: float, high: float) -> float:
         """Return by how much neighbouring intervals that touch a stretch differ at most."""

@@ -13,7 +13,7 @@ Array = NDArray[np.float64]
 
 
 def largest_terms(curve: Curve, r: Array, order: int) -> Array:
-    """Return the largest terms of Taylor coefficients 0 … order at separations in ångström, (order + 1, n)."""
+    """Return the largest terms of Taylor coefficients 0 … order at separations in ångström."""
     result = np.zeros((order + 1, r.size))
     index = curve.indices(r)
     for number, piece in enumerate(curve.pieces):
@@ -27,7 +27,8 @@ def _terms(tree: Tree, r: Array, order: int) -> Array:
     """Take the larger of the parts of a sum; multiply the parts of a product as series of sizes."""
     match tree:
         case Apply(function="+"):
-            return np.max([_terms(part, r, order) for part in tree.arguments], axis=0)
+            largest: Array = np.max([_terms(part, r, order) for part in tree.arguments], axis=0)
+            return largest
         case Apply(function="negate"):
             return _terms(tree.arguments[0], r, order)
         case Apply(function="*"):

@@ -87,7 +87,7 @@ def registry() -> Any:
     import pint
 
     definitions = files("slopewell.units").joinpath("definitions.txt").read_text(encoding="utf-8")
-    made = pint.UnitRegistry(None, non_int_type=Fraction, cache_folder=None)
+    made: Any = pint.UnitRegistry(None, non_int_type=Fraction, cache_folder=None)
     made.load_definitions(definitions.splitlines())
     return made
 

@@ -2,7 +2,8 @@ from __future__ import annotations
 
 import numpy as np
 import pytest
-from slopewell.reports.drawing import Drawing, overlaid, rows_drawing, table_drawings
+from slopewell.document import read_document
+from slopewell.reports.drawing import Drawing, document_drawings, overlaid, rows_drawing, table_drawings
 from slopewell.reports.page import Sheet
 from slopewell.table import Table
 from slopewell.units import unit_system
@@ -70,3 +71,64 @@ def test_a_table_without_forces_has_no_force_panel(table: Table) -> None:
     drawn = rows_drawing(replace(table.interactions[0], force=None), table.units, {})
     assert drawn.view.force is None
     assert drawn.view.energy is not None
+
+
+COMPOSED = """schema = "slopewell/potential/1"
+title = "Segments, points and a mixed pair, invented"
+temperature = "300 K"
+cutoff = { at = 9, treatment = "switch", from = 7 }
+[units]
+energy = "eV"
+length = "angstrom"
+[species.A]
+[species.B]
+[species.C]
+[mixing]
+rule = "lorentz-berthelot"
+exclude = [["A", "C"], ["B", "C"]]
+[[interaction]]
+between = ["A", "A"]
+form = "lennard-jones"
+parameters = { epsilon = 0.01, sigma = 2.9 }
+[[interaction]]
+between = ["B", "B"]
+form = "lennard-jones"
+parameters = { epsilon = "0.04 eV", sigma = 3.1 }
+[[interaction]]
+between = ["C", "C"]
+[[interaction.segment]]
+points = "points.dat"
+[[interaction.segment]]
+join = { method = "blend", from = 5, to = 6 }
+form = "lennard-jones"
+parameters = { epsilon = 0.1, sigma = 2.9 }
+[grid]
+from = 2.4
+to = 9
+rows = 101
+"""
+
+
+@pytest.fixture(scope="module")
+def composed(tmp_path_factory: pytest.TempPathFactory) -> dict[str, Drawing]:
+    folder = tmp_path_factory.mktemp("composed")
+    (folder / "composed.toml").write_text(COMPOSED, encoding="utf-8")
+    rows = [
+        f"{r} {0.4 * ((2.9 / r) ** 12 - (2.9 / r) ** 6)}\n" for r in (2.4, 2.8, 3.2, 3.6, 4.0, 5.0, 6.0, 7.0)
+    ]
+    (folder / "points.dat").write_text("".join(rows), encoding="utf-8")
+    document = read_document(folder / "composed.toml")
+    return {drawn.name: drawn for drawn in document_drawings(document, {})}
+
+
+def test_bridges_and_points_are_drawn(composed: dict[str, Drawing]) -> None:
+    drawn = composed["C-C"]
+    assert drawn.bridges == (pytest.approx((5.0, 6.0)),)
+    assert [r for r, _ in drawn.points] == pytest.approx([2.4, 2.8, 3.2, 3.6, 4.0, 5.0, 6.0, 7.0])
+
+
+def test_a_mixed_pair_says_so_with_its_parameters(composed: dict[str, Drawing]) -> None:
+    # Lorentz and Berthelot: the mean of the sizes, the geometric mean of the depths; by arithmetic.
+    stated = composed["A-B"].stated
+    assert stated.title == "Lennard-Jones 12-6, mixed from like pairs (lorentz-berthelot)"
+    assert [parameter.value for parameter in stated.parameters] == ["0.02 eV", "3 Å"]

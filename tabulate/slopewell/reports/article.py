@@ -45,7 +45,7 @@ def _formula(drawing: Drawing) -> Markup:
     stated = drawing.stated
     if stated is None or not stated.formula:
         return Markup("")
-    origin = f"{stated.title}. {stated.source}" if stated.title else "A formula of the document's own"
+    origin = f"{stated.title}. {stated.source}" if stated.title else "As the document states it"
     return tag(
         "div", Markup(formula_markup(stated.formula)), tag("p", origin, class_="origin"), class_="formula"
     )
@@ -141,7 +141,13 @@ def _facts(drawing: Drawing) -> Iterator[Markup]:
             for parameter in stated.parameters
         ]
         yield tag("table", tag("caption", "Parameters"), tag("tbody", *rows))
-    settings = [("Cutoff", stated.treatment), ("Grid", stated.grid)]
+    length = unit_text(drawing.units.length.text)
+    bridges = [
+        ("Bridge", f"from {number_text(start, 4)} to {number_text(end, 4)} {length}")
+        for start, end in drawing.bridges
+        if end > start
+    ]
+    settings = [*bridges, ("Cutoff", stated.treatment), ("Grid", stated.grid)]
     rows = [tag("tr", tag("th", label, scope="row"), tag("td", words)) for label, words in settings if words]
     if rows:
         yield tag("table", tag("caption", "Treatment"), tag("tbody", *rows))

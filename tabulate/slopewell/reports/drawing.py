@@ -16,7 +16,7 @@ from ..table.interpolation import interpolant
 from ..units import UnitSystem, ratio
 from .along import ErrorAlong
 from .annotation import Flag, Mark, certificate_in, flags_in, landmarks_in, marks_of
-from .stated import Stated, stated_interactions
+from .stated import Stated, mixed, stated_interactions
 from .view import View, round_step, thin, view_of
 
 Array = NDArray[np.float64]
@@ -48,6 +48,10 @@ class Drawing:
         Their record in the report, in the drawing's units; empty where there is none.
     verdict : str
     cutoff, switch_start : float or None
+    bridges : tuple of (float, float)
+        Where one segment of the curve goes over into the next.
+    points : tuple of (float, float)
+        Separations and energies that the curve was put through.
     stated : Stated or None
         What the document says of it.
     certificate : mapping
@@ -75,6 +79,8 @@ class Drawing:
     verdict: str = "pass"
     cutoff: float | None = None
     switch_start: float | None = None
+    bridges: tuple[tuple[float, float], ...] = ()
+    points: tuple[tuple[float, float], ...] = ()
     stated: Stated | None = None
     certificate: Mapping[str, Any] = field(default_factory=dict)
     error: ErrorAlong | None = None
@@ -95,12 +101,13 @@ class Overlay:
 def document_drawings(document: Document, record: Mapping[str, Any]) -> tuple[Drawing, ...]:
     """Return the drawings of a document, given its subject in the report."""
     stated = stated_interactions(document.text)
-    return tuple(
-        potential_drawing(
-            interaction.potential, document.units, record, stated.get(interaction.potential.name)
-        )
-        for interaction in document.interactions
-    )
+    drawings = []
+    for interaction in document.interactions:
+        potential = interaction.potential
+        said = stated.get(potential.name) or mixed(interaction, document.units)
+        said = replace(said, formula=said.formula or potential.formula)
+        drawings.append(potential_drawing(potential, document.units, record, said))
+    return tuple(drawings)
 
 
 def potential_drawing(
@@ -142,6 +149,12 @@ def potential_drawing(
         switch_start=switch_start,
         stated=stated,
         certificate=certificate_in(record, potential.name),
+        bridges=tuple((float(b.join.start) / size, float(b.join.end) / size) for b in potential.bridges),
+        points=tuple(
+            (r / size, energy / energy_size)
+            for points, _ in potential.splines
+            for r, energy in zip(*(column.tolist() for column in points.arrays()), strict=True)
+        ),
     )
     return _annotated(drawing, record)
 

@@ -18,7 +18,7 @@ if TYPE_CHECKING:
     from matplotlib.axes import Axes
     from matplotlib.figure import Figure, SubFigure
 
-INK, SOFT, GRID, WINDOW = "#1d2227", "#565e66", "#ebe9e3", "#7a6bb0"
+INK, SOFT, GRID, WINDOW, BRIDGE = "#1d2227", "#565e66", "#ebe9e3", "#7a6bb0", "#2f8f7a"
 COLOURS = {"energy": "#00639c", "force": "#a8470b", "other": "#3d434a"}
 LINES: dict[str, Any] = {
     "energy": "-",
@@ -120,6 +120,8 @@ def _panel(ax: Axes, panel: Panel, drawing: Drawing, *, labelled: bool) -> None:
     ax.set_axisbelow(True)
     if drawing.switch_start is not None and drawing.cutoff is not None:
         ax.axvspan(drawing.switch_start, drawing.cutoff, color=WINDOW, alpha=0.12, linewidth=0)
+    for start, end in drawing.bridges:
+        ax.axvspan(start, end, color=BRIDGE, alpha=0.15, linewidth=0)
     if drawing.cutoff is not None:
         ax.axvline(drawing.cutoff, color=SOFT, linewidth=0.9, linestyle=(0, (5, 4)))
     _flags(ax, drawing)
@@ -139,6 +141,14 @@ def _panel(ax: Axes, panel: Panel, drawing: Drawing, *, labelled: bool) -> None:
             _mark(ax, mark, drawing)
     if panel.kind == "energy":
         _ends(ax, drawing)
+        if drawing.points:
+            ax.plot(
+                *zip(*drawing.points, strict=True),
+                "o",
+                markersize=3,
+                color=COLOURS["energy"],
+                label="_points",
+            )
     for words, side in senses(panel):
         height, anchor = (0.97, "top") if side == "above" else (0.14, "bottom")
         place = {"transform": ax.transAxes, "ha": "right", "va": anchor}

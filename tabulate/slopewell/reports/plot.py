@@ -2,7 +2,7 @@
 
 from __future__ import annotations
 
-from collections.abc import Sequence
+from collections.abc import Iterator, Sequence
 from math import log10
 
 import numpy as np
@@ -44,7 +44,7 @@ def panel_markup(panel: Panel, drawing: Drawing, systems: Sequence[UnitSystem]) 
         _vertical_ticks(panel, drawing, systems),
         *words,
         join([_mark(mark, number, panel, drawing) for number, mark in enumerate(drawing.marks, 1)]),
-        _ends(drawing) if panel.kind == "energy" else Markup(""),
+        join([_ends(drawing), *_points(drawing, panel)] if panel.kind == "energy" else []),
         tag("i", class_="dot", hidden=True),
         class_="plot",
         data_panel=panel.kind,
@@ -69,6 +69,10 @@ def _svg(panel: Panel, drawing: Drawing) -> Markup:
         )
         width = f"{end - start:.1f}"
         parts.append(tag("rect", class_="window", x=f"{start:.1f}", y=0, width=width, height=SIZE))
+    for bridge in drawing.bridges:
+        start, end = (min(max(_along(place, drawing), 0.0), 100.0) / 100 * SIZE for place in bridge)
+        width = f"{max(end - start, 2):.1f}"
+        parts.append(tag("rect", class_="bridge", x=f"{start:.1f}", y=0, width=width, height=SIZE))
     parts += [_flag_area(flag.start, flag.end, str(flag.finding["level"]), drawing) for flag in drawing.flags]
     if not panel.logarithmic:
         parts.append(tag("path", class_="zero", d=f"M0 {zero:.1f}H{SIZE}"))
@@ -190,6 +194,20 @@ def _mark_words(mark: Mark, drawing: Drawing) -> list[Markup]:
                     ]
                 )
             ]
+
+
+def _points(drawing: Drawing, panel: Panel) -> Iterator[Markup]:
+    """Yield the points that the curve was put through, and the names of bridges."""
+    for r, energy in drawing.points:
+        across, down = _along(r, drawing), share(energy, panel.limits)
+        if 0 <= across <= 100 and 0 <= down <= 100:
+            yield tag("i", class_="point", style=f"left:{across:.2f}%;top:{down:.2f}%")
+    for start, end in drawing.bridges:
+        middle = (_along(start, drawing) + _along(end, drawing)) / 2
+        if 0 <= middle <= 100:
+            yield tag(
+                "span", "bridge" if end > start else "join", class_="joined", style=f"left:{middle:.2f}%"
+            )
 
 
 def _ends(drawing: Drawing) -> Markup:

@@ -3,16 +3,21 @@
 from __future__ import annotations
 
 import json
+import re
 import tomllib
+from collections.abc import Iterator
 from dataclasses import dataclass
 from decimal import Decimal
 from fractions import Fraction
 from typing import Any
 
+from ..document.model import Interaction
 from ..forms import Form, catalogue
 from ..units import UnitSystem, quantity, unit_system
-from .view import unit_text
+from .view import number_text, unit_text
 
+PLAIN = re.compile(r"[-−]?[\d.]+(?:×10[⁻⁰¹²³⁴⁵⁶⁷⁸⁹]+)?")
+"""A number without a unit."""
 TREATMENTS = {
     "truncate": "cut off without a correction",
     "shifted-energy": "shifted, so that the energy ends at zero",
@@ -72,6 +77,22 @@ def stated_interactions(text: str) -> dict[str, Stated]:
         return {}
 
 
+def mixed(interaction: Interaction, units: UnitSystem) -> Stated:
+    """Return what stands for the words of a document where mixing filled in a pair."""
+    origin, cutoff = interaction.origin, interaction.potential.cutoff
+    form = catalogue().get(origin.form)
+    plain = {
+        name: v if isinstance(v, str) else number_text(float(v)) for name, v in origin.parameters.items()
+    }
+    return Stated(
+        formula=form.formula if form else "",
+        title=f"{form.title}, mixed from like pairs ({origin.rule})" if form else "",
+        source=form.source if form else "",
+        parameters=_parameters(plain, form, units) if form else (),
+        cutoff=None if cutoff is None else float(cutoff.at),
+    )
+
+
 def _data(text: str) -> Any:
     if text.lstrip()[:1] == "{":
         return json.loads(text, parse_float=Decimal)
@@ -86,12 +107,25 @@ def _stated(entry: dict[str, Any], data: dict[str, Any], units: UnitSystem) -> S
         formula=form.formula if form else entry.get("energy", ""),
         title=form.title if form else "",
         source=form.source if form else "",
-        parameters=_parameters(entry.get("parameters", {}), form, units),
+        parameters=tuple(_all_parameters(entry, units)),
         treatment=_treatment(cutoff, units),
         cutoff=at,
         switch_start=start,
         grid=_grid(entry.get("grid", data.get("grid", {})), units),
     )
+
+
+def _all_parameters(entry: dict[str, Any], units: UnitSystem, part: str = "") -> Iterator[StatedParameter]:
+    """Yield the parameters of an entry and of its terms and segments, each with the part it belongs to."""
+    form = catalogue().get(entry.get("form", ""))
+    for parameter in _parameters(entry.get("parameters", {}), form, units):
+        meaning = ", ".join(words for words in (parameter.meaning, part) if words)
+        yield StatedParameter(parameter.name, parameter.value, meaning)
+    for kind in ("segment", "term"):
+        for number, inner in enumerate(entry.get(kind, ()), 1):
+            yield from _all_parameters(
+                inner, units, " of ".join(words for words in (f"{kind} {number}", part) if words)
+            )
 
 
 def _parameters(given: dict[str, Any], form: Form | None, units: UnitSystem) -> tuple[StatedParameter, ...]:
@@ -107,7 +141,7 @@ def _parameters(given: dict[str, Any], form: Form | None, units: UnitSystem) -> 
 
 def _value(value: Any, dimension: str, units: UnitSystem) -> str:
     """Return a value with its unit; a plain number is in the document's."""
-    if isinstance(value, str):
+    if isinstance(value, str) and not PLAIN.fullmatch(value):
         return unit_text(value)
     names = {"energy": units.energy.text, "length": units.length.text, "temperature": "K", "mass": "dalton"}
     words = [word.partition("^") for word in dimension.split() if word != "1"]

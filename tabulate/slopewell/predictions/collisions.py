@@ -17,6 +17,8 @@ Array = NDArray[np.float64]
 ORDERS = ((1, 1), (2, 2))
 ENERGIES = 110
 """Collision energies at which cross-sections are computed."""
+NEAR_ENOUGH = 1e-8
+"""To which ends of branches are found, in ångström."""
 ANGLES = panels(np.linspace(0.0, pi / 2, 5), 14)
 """Nodes and weights of the integral over one encounter."""
 NEAR = panels(np.linspace(0.0, 1.0, 7), 12)
@@ -49,9 +51,19 @@ def deflection(curve: EnergyCurve, energy: float, closest: Array) -> Array:
     return np.asarray(pi - 2 * ratio * integral)
 
 
-def branches(curve: EnergyCurve, energy: float) -> list[tuple[float, float]]:
+def branches(curve: EnergyCurve, energy: float, grid: tuple[Array, Array]) -> list[tuple[float, float]]:
     """Return the stretches of closest approach that encounters at an energy can have; the last has no end.
 
+    Parameters
+    ----------
+    curve : EnergyCurve
+    energy : float
+        In eV.
+    grid : (n,) array, (n,) array
+        Separations, and the energies there.
+
+    Notes
+    -----
     Below a critical energy encounters orbit, and a stretch is left out.
     """
     from scipy.optimize import brentq
@@ -64,8 +76,8 @@ def branches(curve: EnergyCurve, energy: float) -> list[tuple[float, float]]:
         u, slope = curve.all(np.array([r]), 1)[:, 0]
         return float(2 * (1 - u / energy) - r * slope / energy)
 
-    r = np.geomspace(0.3 * curve.start, min(curve.reach, 12 * curve.end), 3000)
-    b = r**2 * (1 - curve.energy(r) / energy)
+    r, along = grid
+    b = r**2 * (1 - along / energy)
     allowed = (b > 0) & (b <= np.minimum.accumulate(b[::-1])[::-1] * (1 + 1e-12))
     edges = np.flatnonzero(np.diff(allowed.astype(int)))
     starts = [int(k) + 1 for k in edges if allowed[k + 1]] or [0]
@@ -73,10 +85,18 @@ def branches(curve: EnergyCurve, energy: float) -> list[tuple[float, float]]:
     found: list[tuple[float, float]] = []
     for number, first in enumerate(starts):
         if number == 0:
-            left = brentq(square, r[first - 1], r[first]) if first and b[first - 1] < 0 else float(r[first])
+            left = (
+                brentq(square, r[first - 1], r[first], xtol=NEAR_ENOUGH)
+                if first and b[first - 1] < 0
+                else float(r[first])
+            )
         else:
             low, high = r[max(first - 2, 0)], r[min(first + 2, r.size - 1)]
-            left = brentq(growth, low, high) if growth(low) < 0 < growth(high) else float(r[first])
+            left = (
+                brentq(growth, low, high, xtol=NEAR_ENOUGH)
+                if growth(low) < 0 < growth(high)
+                else float(r[first])
+            )
         if found:
             last = ends[number - 1]
             level = square(left)
@@ -84,17 +104,17 @@ def branches(curve: EnergyCurve, energy: float) -> list[tuple[float, float]]:
             crosses = (square(low) - level) * (square(high) - level) < 0
             found[-1] = (
                 found[-1][0],
-                brentq(lambda x, b2=level: square(x) - b2, low, high) if crosses else low,
+                brentq(lambda x, b2=level: square(x) - b2, low, high, xtol=NEAR_ENOUGH) if crosses else low,
             )
         found.append((float(left), np.inf))
     return found
 
 
-def cross_sections(curve: EnergyCurve, energy: float) -> tuple[float, float]:
+def cross_sections(curve: EnergyCurve, energy: float, grid: tuple[Array, Array]) -> tuple[float, float]:
     """Return the transport cross-sections 2π∫(1 − cosˡχ) b db in Å² for l = 1 and 2."""
     totals = np.zeros(2)
     x, weight = NEAR
-    for number, (left, right) in enumerate(branches(curve, energy)):
+    for number, (left, right) in enumerate(branches(curve, energy, grid)):
         # Nodes crowd at the core, which may be steep, and where encounters orbit and the angle has no bound.
         if np.isinf(right):
             power = 4 if number else 2
@@ -136,7 +156,9 @@ def collision_integrals(curve: EnergyCurve, temperatures: Array) -> dict[tuple[i
     quick = curve.sampled
     thermal = float(BOLTZMANN) * np.asarray(temperatures, dtype=np.float64)
     energies = np.geomspace(0.02 * thermal.min(), 40 * thermal.max(), ENERGIES)
-    sections = np.array([cross_sections(quick, float(energy)) for energy in energies])
+    r = np.geomspace(0.3 * curve.start, min(curve.reach, 12 * curve.end), 3000)
+    grid = r, quick.energy(r)
+    sections = np.array([cross_sections(quick, float(energy), grid) for energy in energies])
     spheres = pi * curve.collision_diameter**2 * np.array([1.0, 2 / 3])
     curves = CubicSpline(np.log(energies), sections / spheres)
     x, weight = panels(np.geomspace(0.02, 40.0, 60))

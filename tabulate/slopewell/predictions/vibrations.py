@@ -16,7 +16,7 @@ from .figures import ENERGY, HBAR_SQUARED, LENGTH, Figure, Setting, System
 
 Array = NDArray[np.float64]
 WAVENUMBER = float(EV_PER_WAVENUMBER)
-MOST_POINTS = 1000
+MOST_POINTS = 700
 """Points of the finer of the two grids that levels are computed on."""
 AGREEMENT = 1e-6
 """A level counts when two grids agree on it to this part of the depth."""
@@ -112,8 +112,22 @@ def _solve(
     matrix = kinetic / step**2 * toeplitz(column)
     matrix[np.diag_indices(r.size)] += np.minimum(curve.energy(r), ceiling)
     energies = eigh(matrix, eigvals_only=True, subset_by_value=(-np.inf, top), check_finite=False)
-    lowest = eigh(matrix, subset_by_index=(0, 0), check_finite=False)[1][:, 0]
-    return energies, lowest, r
+    return energies, _lowest(matrix, energies), r
+
+
+def _lowest(matrix: Array, energies: Array) -> Array:
+    """Return the wave function of the lowest energy by inverse iteration."""
+    from scipy.linalg import lu_factor, lu_solve
+
+    if energies.size < 2:
+        return np.ones(len(matrix))
+    shift = energies[0] - 1e-6 * (energies[1] - energies[0])
+    factors = lu_factor(matrix - shift * np.eye(len(matrix)), check_finite=False)
+    wave = np.ones(len(matrix))
+    for _ in range(3):
+        wave = lu_solve(factors, wave, check_finite=False)
+        wave /= np.linalg.norm(wave)
+    return np.asarray(wave)
 
 
 def anharmonic_wavenumber(derivatives: Array, reduced_mass: float) -> float:

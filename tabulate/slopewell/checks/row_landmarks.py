@@ -126,11 +126,14 @@ def _turning_point(curve: Chebyshev, near: float) -> float:
 
 
 def _zero_crossing(separation: Array, energy: Array, bottom: int | None) -> float | None:
-    falling = np.flatnonzero((energy[:-1] > 0) & (energy[1:] <= 0) & (np.roll(energy, -1)[:-1] < 0))
+    nonzero = np.flatnonzero(energy)
+    falling = nonzero[:-1][(energy[nonzero[:-1]] > 0) & (energy[nonzero[1:]] < 0)]
     before = falling if bottom is None else falling[falling < bottom]
     chosen = before[-1] if before.size else (falling[0] if falling.size else None)
     if chosen is None:
         return None
+    if energy[chosen + 1] == 0:
+        return float(separation[chosen + 1])
     curve = local(separation, energy, int(chosen))
     low, high = float(separation[chosen]), float(separation[chosen + 1])
     if not float(curve(low)) > 0 > float(curve(high)):

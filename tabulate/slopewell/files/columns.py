@@ -22,6 +22,8 @@ Array = NDArray[np.float64]
 COMMENTS = ("#", "!", ";", "//", "@")
 PLAIN = b"0123456789+-.eE \t\r\n"
 EMPTY_LINE = re.compile(rb"\n[ \t\r]*\n")
+MARKS = (b"\xef\xbb\xbf", b"\xff\xfe", b"\xfe\xff")
+"""Byte order marks."""
 NUMBER = re.compile(r"[+-]?(?:\d+\.?\d*|\.\d+)(?:[eEdD][+-]?\d+|[+-]\d+)?|[+-]?(?:nan|inf|infinity)", re.IGNORECASE)
 SPLIT = re.compile(r"\s*[,;]\s*|\s+")
 INLINE_COMMENT = re.compile(r"\s*(?:#|!|//).*$")
@@ -102,15 +104,19 @@ def _bytes(path: Path) -> bytes:
 
 
 def _text(raw: bytes) -> str:
-    wide = raw.startswith((b"\xff\xfe", b"\xfe\xff"))
-    text = raw.decode("utf-16", "replace") if wide else raw.removeprefix(b"\xef\xbb\xbf").decode("latin-1")
+    wide = raw.startswith(MARKS[1:])
+    text = raw.decode("utf-16", "replace") if wide else raw.removeprefix(MARKS[0]).decode("latin-1")
     return text.replace("\r\n", "\n").replace("\r", "\n") if "\r" in text else text
 
 
 def _plain(path: Path, raw: bytes, count: int) -> Array | None:
     """Read a file of one block without anything unusual in it at full speed; None if it is not one."""
+    if raw.startswith(MARKS):
+        return None
     start = 0
-    while (end := raw.find(b"\n", start)) >= 0 and not _is_row(raw[start:end].decode("latin-1"), count):
+    while (end := raw.find(b"\n", start)) >= 0 and not _is_row(line := raw[start:end].decode("latin-1"), count):
+        if _is_like_row(line) and len(_tokens(line)) == count:
+            return None
         start = end + 1
     body = raw[start:]
     separator = next((mark for mark in ",;" if mark.encode() in body[:2000]), None)

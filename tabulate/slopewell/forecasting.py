@@ -17,6 +17,7 @@ from .studies import Studied, study
 from .tables import Reading
 from .units import dimension, quantity
 
+MOST_TEMPERATURES = 1000
 CENTRAL = (
     "A pair potential has no angles and no many-body cohesion; where atoms are centres of inversion it gives "
     "C12 = C44 (Cauchy): what differs from that in a real crystal is beyond it."
@@ -177,10 +178,11 @@ def read_temperatures(text: str) -> tuple[float, ...]:
         parts = [Fraction(part) for part in text.removesuffix("K").strip().replace(",", ":").split(":")]
         if ":" in text:
             first, last, step = parts if len(parts) == 3 else (*parts, Fraction(50))
-            parts = [first + k * step for k in range(int((last - first) / step) + 1)]
+            count = int((last - first) / step) + 1
+            parts = [first + k * step for k in range(min(count, MOST_TEMPERATURES + 1))]
     except (ValueError, ZeroDivisionError):
         parts = []
-    if not parts or min(parts) <= 0 or len(parts) > 1000:
+    if not parts or min(parts) <= 0 or len(parts) > MOST_TEMPERATURES:
         says = f'"{text}" gives no positive temperatures.'
         raise UnusableInput([Problem("--temperatures", says, "Write them like 150:700:50 or 100,300.")])
     return tuple(float(part) for part in parts)

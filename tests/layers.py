@@ -16,6 +16,7 @@ LAYERS = (
     "reports",
     "outputs",
     "planning",
+    "fitting",
     "tables",
     "resampling",
     "conversion",
@@ -32,5 +33,6 @@ LAYERS = (
     "ensemble",
     "sheets",
     "notebook",
+    "api",
     "cli",
 )

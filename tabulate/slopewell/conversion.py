@@ -87,14 +87,19 @@ class Converted:
 
 
 def convert(
-    path: str | Path, new: str | Path, changes: Changes | None = None, *, reading: Reading | None = None
+    source: str | Path | Table,
+    new: str | Path | None = None,
+    changes: Changes | None = None,
+    *,
+    reading: Reading | None = None,
 ) -> Converted:
     """Convert a table and write it.
 
     Parameters
     ----------
-    path, new : path
-        The table, and the file to write; its ending names the format unless a layout is given.
+    source : path or Table
+    new : path, optional
+        The file to write; its ending names the format unless a layout is given. Nothing is written without it.
     changes : Changes, optional
     reading : Reading, optional
         How a table that slopewell did not write is to be read.
@@ -106,25 +111,33 @@ def convert(
     """
     wanted = changes or Changes()
     chosen = reading or Reading()
-    loaded = load(path, chosen)
     _known_accepted(wanted.accept)
-    source = f"read from {Path(path).name} (sha256 {loaded.sha256})"
-    loaded = replace(loaded, table=replace(loaded.table, history=(*loaded.table.history, source)))
+    name = "" if isinstance(source, Table) else str(source)
+    loaded = Loaded(source, "") if isinstance(source, Table) else _read(source, chosen)
     if wanted.mend:
         loaded = mended(loaded, wanted.mend)
-    subject = check_loaded(loaded, str(path))
+    subject = check_loaded(loaded, name)
     errors = {finding.check for finding in subject.findings if finding.level == ERROR}
     accepted = tuple(name for name in wanted.accept if name in errors)
     subject = replace(subject, accepted=accepted)
-    stored = Report((replace(subject, file=Path(path).name),))
+    stored = Report((replace(subject, file=Path(name).name),))
     if errors - set(wanted.accept):
         return Converted(Report((subject,)), loaded.table)
     table, added = changed(loaded.table, wanted)
     if accepted:
         table = replace(table, history=(*table.history, f"written although these checks found errors: {', '.join(accepted)}"))
     table = replace(table, writer=f"slopewell {__version__}", constants=table.constants or CODATA, report=stored.record())
+    if new is None:
+        return Converted(Report((subject,)), table, (), added)
     write(table, Path(new), wanted.layout)
     return Converted(Report((subject,)), table, (Path(new),), added)
+
+
+def _read(path: str | Path, reading: Reading) -> Loaded:
+    """Read a table, and note in its history where it came from."""
+    loaded = load(path, reading)
+    source = f"read from {Path(path).name} (sha256 {loaded.sha256})"
+    return replace(loaded, table=replace(loaded.table, history=(*loaded.table.history, source)))
 
 
 def changed(table: Table, changes: Changes) -> tuple[Table, dict[str, tuple[float, float]]]:

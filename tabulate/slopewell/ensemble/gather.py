@@ -15,7 +15,6 @@ from .. import __version__
 from ..document import Document
 from ..files import hdf5
 from ..files.atomic import whole_file
-from ..table import Table
 from ..units.constants import CODATA
 from . import summary
 from .job import ONE_TABLE
@@ -102,11 +101,16 @@ class Results:
         assert found is not None
         return found
 
-    def table(self, name: str, content: str) -> Table:
-        """Return the table of a set that has one."""
+    @contextmanager
+    def table(self, name: str, content: str) -> Iterator[Any]:
+        """Open the table of a set that has one."""
+        import h5py
+
         if self.is_old(name, content):
-            return hdf5.read_group(self.old.file["sets"][name], Path(name))
-        return hdf5.read(self.store.folder / name / ONE_TABLE)
+            yield self.old.file["sets"][name]
+        else:
+            with h5py.File(self.store.folder / name / ONE_TABLE, "r") as file:
+                yield file
 
 
 def write(path: Path, document: Document, sets: Callable[[], Iterator[Named]], results: Results) -> None:
@@ -146,7 +150,8 @@ def _copied(groups: Any, sets: Iterator[Named], results: Results) -> Iterator[di
         group = groups.create_group(name)
         record = results.record(name, content)
         if record["files"]:
-            hdf5.write_group(group, results.table(name, content))
+            with results.table(name, content) as table:
+                hdf5.copy_group(table, group)
         else:
             group["report"] = json.dumps(record["report"], indent=1, ensure_ascii=False)
         kept = {key: value for key, value in record.items() if key != "report"}

@@ -23,18 +23,29 @@ def write(table: Table, path: Path) -> None:
     import h5py
 
     with whole_file(path) as temporary, h5py.File(temporary, "w", libver=("earliest", "v110")) as file:
-        write_group(file, table)
+        for key, value in provenance(table).items():
+            if key != "report":
+                file.attrs[key] = value if isinstance(value, str) else json.dumps(value, ensure_ascii=False)
+        file["report"] = json.dumps(table.report, indent=1, ensure_ascii=False)
+        interactions = file.create_group("interactions", track_order=True)
+        for rows in table.interactions:
+            _write_rows(interactions.create_group(rows.name), rows, table.units)
 
 
-def write_group(group: Any, table: Table) -> None:
-    """Write a table into a group of an open HDF5 file."""
-    for key, value in provenance(table).items():
-        if key != "report":
-            group.attrs[key] = value if isinstance(value, str) else json.dumps(value, ensure_ascii=False)
-    group["report"] = json.dumps(table.report, indent=1, ensure_ascii=False)
-    interactions = group.create_group("interactions", track_order=True)
-    for rows in table.interactions:
-        _write_rows(interactions.create_group(rows.name), rows, table.units)
+def copy_group(source: Any, target: Any) -> None:
+    """Copy a table from one group of an open HDF5 file to an empty group of another."""
+    for key, value in source.attrs.items():
+        target.attrs[key] = value
+    for name in source:
+        source.copy(name, target)
+    # References do not outlive a copy: the dimension scales are attached anew.
+    for columns in target["interactions"].values():
+        scale = columns["separation"]
+        del scale.attrs["REFERENCE_LIST"]
+        for name, column in columns.items():
+            if name != "separation":
+                del column.attrs["DIMENSION_LIST"]
+                column.dims[0].attach_scale(scale)
 
 
 def _write_rows(group: Any, rows: Rows, units: UnitSystem) -> None:

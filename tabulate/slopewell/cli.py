@@ -176,6 +176,31 @@ def _plan(options: argparse.Namespace) -> int:
     return GOOD
 
 
+def _fit_options(command: argparse.ArgumentParser) -> None:
+    command.add_argument("document", metavar="DOCUMENT", help="potential document with something to fit")
+    command.add_argument("-o", "--output", metavar="NEW", help="write the document with its values, .toml or .json")
+    command.add_argument("--json", action="store_true", help="print only the fits, as JSON")
+    command.set_defaults(command=_fit)
+
+
+def _fit(options: argparse.Namespace) -> int:
+    from .fitting import fit
+    from .reports.origins import fit_lines, fit_record
+
+    document, fits = fit(options.document, options.output)
+    records = [{"interaction": name, **fit_record(one, document.units)} for name, one in fits]
+    if options.json:
+        _print_json({"fits": records})
+        return GOOD
+    for record in records:
+        print(record["interaction"])
+        for label, value in fit_lines(record, document.units):
+            print(f"  {label:<24}{value}")
+    if options.output:
+        print(f"wrote {options.output}")
+    return GOOD
+
+
 def _forms_options(command: argparse.ArgumentParser) -> None:
     command.add_argument("name", nargs="?", metavar="NAME", help="show one form, with a block to paste")
     command.set_defaults(command=_forms)
@@ -259,6 +284,7 @@ COMMANDS: tuple[tuple[str, str, Callable[[argparse.ArgumentParser], None]], ...]
     ("tabulate", "check a document, then write every output that it names", _tabulate_options),
     ("convert", "carry a table over to other units, rows, formats and layouts, or mend it", convert_options),
     ("compare", "how far two tables, or a table and a document, lie apart", compare_options),
+    ("fit", "fit parameters to points, and write a document with their values", _fit_options),
     ("plan", "how many rows each grid and interpolation rule needs", _plan_options),
     ("sheet", "write a page or a picture of curves, landmarks and findings", _sheet_options),
     ("predict", "crystals, gas, vibrations: what the curve and the table give", predict_options),

@@ -10,6 +10,7 @@ from . import (
     first_row_energy,
     force_matches_slope,
     last_row,
+    no_wiggles,
     repulsive_core,
     row_shape,
     rows_evenly_spaced,
@@ -17,6 +18,7 @@ from . import (
     rows_readable,
     single_well,
     smooth_inside,
+    sound_bridges,
     table_error,
 )
 from .findings import Check
@@ -29,6 +31,8 @@ POTENTIAL_CHECKS: tuple[Check[PotentialFacts], ...] = (
     smooth_inside.CHECK,
     cutoff_steps.CHECK,
     repulsive_core.CHECK,
+    sound_bridges.CHECK,
+    no_wiggles.CHECK,
     single_well.CHECK,
     expected_landmarks.CHECK,
     first_row_energy.CHECK,

@@ -3,16 +3,43 @@
 from __future__ import annotations
 
 from collections.abc import Iterator
+from dataclasses import replace
 
 from .findings import Check, Finding
 from .jumps import interior_edges, judge
 from .potential_facts import PotentialFacts
 
+MOST_APART = 3
+"""Places with a jump of one kind from which on they make one finding together."""
+
 
 def look(facts: PotentialFacts) -> Iterator[Finding]:
-    """Judge the jumps at every point where where, abs, min or max changes branch."""
+    """Judge the jumps wherever a branch changes, segments meet, or the pieces of a spline do."""
+    found: dict[str, list[Finding]] = {}
     for edge in interior_edges(facts):
-        yield from judge(facts, edge, "where the formula changes branch,", "Choose branches that meet smoothly.")
+        for finding in judge(facts, edge, f"{_place(facts)},", _remedy(facts)):
+            found.setdefault(str(finding.unit), []).append(finding)
+    for alike in found.values():
+        yield from alike if len(alike) <= MOST_APART else [_together(facts, alike)]
+
+
+def _place(facts: PotentialFacts) -> str:
+    plain = not (facts.potential.splines or facts.potential.segments)
+    return "where the formula changes branch" if plain else "where one piece of the curve ends"
+
+
+def _remedy(facts: PotentialFacts) -> str:
+    if facts.potential.splines:
+        return 'Use spline = "quintic" or "cubic", whose curvature does not jump; at the ends, add points.'
+    return "Choose branches that meet smoothly, or join segments by a bridge of a higher degree."
+
+
+def _together(facts: PotentialFacts, alike: list[Finding]) -> Finding:
+    """Return the worst of many jumps, saying how many there are."""
+    worst = max(alike, key=lambda finding: finding.measured or 0.0)
+    starts = [finding.start for finding in alike if finding.start is not None]
+    says = f"{worst.says} It is the largest of {len(alike)} such jumps."
+    return replace(worst, says=says, start=min(starts), end=max(starts))
 
 
 CHECK: Check[PotentialFacts] = Check(

@@ -1,4 +1,4 @@
-"""Read what the energy of an interaction is made of: a form, a formula, points, a sum of terms, or segments."""
+"""Read what an energy is made of: a form, a formula, points, a sum of terms, or segments."""
 
 from __future__ import annotations
 
@@ -13,8 +13,8 @@ from ..formula.branches import Piece, TooManyBranches, resolve
 from ..formula.tree import Apply, R, multiply, number
 from ..potential import Curve
 from ..potential.fitting import Fit
-from ..potential.joins import Bridge, JoinError, Join, join_segments
-from ..potential.splines import SplineError, Points, extended, spline
+from ..potential.joins import Bridge, Join, JoinError, join_segments
+from ..potential.splines import Points, SplineError, extended, spline
 from ..potential.sums import add_curves
 from ..units.constants import COULOMB
 from .energy import read_formula

@@ -14,14 +14,14 @@ from numpy.typing import NDArray
 from ..forms import Form, catalogue
 from ..formula import bind
 from ..formula.taylor import derivatives
-from ..potential.fitting import Fit, FittedParameter, FitError, Solution, least_squares
+from ..potential.fitting import Fit, FitError, FittedParameter, Solution, least_squares
 from ..potential.splines import Points
 from ..units.constants import BOLTZMANN
-from ..units.system import QUANTITY
+from ..units.system import QUANTITY, UnitSystem, quantity
 from .energy import Formula, read_formula
 from .points import checksum, read_points
 from .setting import Setting
-from .values import Notes, read_temperature
+from .values import Notes, read_temperature, scale
 
 Array = NDArray[np.float64]
 
@@ -29,9 +29,9 @@ Array = NDArray[np.float64]
 def fitted(
     notes: Notes, path: str, entry: Mapping[str, Any], setting: Setting
 ) -> tuple[Mapping[str, Any], Fit] | None:
-    """Return the entry with its fitted parameters put in, and the fit; None, and problems noted, if there is none."""
+    """Return the entry with fitted parameters, and the fit; None, and problems noted, if there is none."""
     given, names = entry["fit"], entry["fit"]["parameters"]
-    filled = _with_starts(entry, names)
+    filled = _with_starts(entry, names, setting.units)
     formula = read_formula(notes, path, filled, setting.units)
     points = read_points(notes, f"{path}.fit", "to", given, setting)
     if formula is None or points is None or not _names_known(notes, path, names, filled):
@@ -55,14 +55,18 @@ def fitted(
         return None
 
 
-def _with_starts(entry: Mapping[str, Any], names: list[str]) -> dict[str, Any]:
+def _with_starts(entry: Mapping[str, Any], names: list[str], units: UnitSystem) -> dict[str, Any]:
     """Return an entry in which each parameter to fit has a value: its own, or the catalogue's example."""
     form = catalogue().get(entry.get("form", ""))
     given = dict(entry.get("parameters", {}))
     for parameter in form.parameters if form else ():
         if parameter.name in names and parameter.name not in given:
-            pure = parameter.dimension == "1"
-            given[parameter.name] = Decimal(parameter.example) if pure else parameter.example
+            example = (
+                Fraction(parameter.example)
+                if parameter.dimension == "1"
+                else quantity(parameter.example).value
+            )
+            given[parameter.name] = Decimal(repr(float(example / scale(parameter.dimension, units))))
     return {**{key: value for key, value in entry.items() if key != "fit"}, "parameters": given}
 
 
@@ -148,7 +152,7 @@ def _fit(
 
 
 def _guess(form: Form | None, names: list[str], start: Array, r: Array, energy: Array) -> Array:
-    """Return a start from the deepest point: its depth for energies, its place for lengths of a catalogue form."""
+    """Return a start from the deepest point: its depth for energies, its place for lengths of a form."""
     dimensions = {p.name: p.dimension for p in form.parameters} if form else {}
     deepest = int(np.argmin(energy))
     seen = {"energy": float(-energy[deepest]), "length": float(r[deepest])}
@@ -186,7 +190,7 @@ def _written(start: Any, value: float, started: float) -> Any:
 def _parameters(
     names: list[str], written: Mapping[str, Any], solution: Solution, count: int, known: bool
 ) -> tuple[FittedParameter, ...]:
-    """Return parameters with their errors: from the points' own errors, or else from how the points scatter."""
+    """Return parameters with errors: from those of the points, or else from how the points scatter."""
     variance = 1.0 if known else solution.chi_squared / (count - len(names))
     errors = np.sqrt(np.diag(solution.covariance) * variance)
     found = []

@@ -57,6 +57,7 @@ def read_interaction(
         energy_scale=setting.energy_scale,
         purpose=setting.purpose,
         bridges=whole.bridges,
+        segments="segment" in entry,
         splines=whole.splines,
     )
     expectations = _expectations(notes, f"{path}.expect", entry.get("expect", {}), potential)

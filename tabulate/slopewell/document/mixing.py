@@ -93,8 +93,7 @@ def _entry(
         return None
     units = setting.units
     parameters: dict[str, Any] = {p.name: values[p.name] / scale(p.dimension, units) for p in form.parameters}
-    for name, value in override.get("parameters", {}).items():
-        parameters[name] = value
+    parameters |= override.get("parameters", {})
     entry = {
         "between": list(between),
         "form": form.name,
@@ -134,7 +133,10 @@ def _likes(
             notes.add(path, says, _WRITE.format(*between))
             return None
     if first.form != second.form:
-        says = f"{name} can't be mixed: {between[0]}-{between[0]} is {first.form}, {between[1]}-{between[1]} is {second.form}."
+        forms = " and ".join(
+            f"{one}-{one} is {c.form}" for one, c in zip(between, (first, second), strict=True)
+        )
+        says = f"{name} can't be mixed: {forms}."
         notes.add(path, says, _WRITE.format(*between))
         return None
     if first.form not in RULES[rule].mixes:

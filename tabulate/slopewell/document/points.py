@@ -15,7 +15,7 @@ from .setting import Setting
 from .values import Notes, read_units
 
 COLUMNS = ("separation", "energy", "slope", "force", "error", "weight", "skip")
-"""What a column of points may hold: ``error`` is the standard error of the energy, ``weight`` that of a fit."""
+"""What a column of points may hold: ``error`` is the standard error of the energy."""
 COMMENTS = ("#", "!", ";", "//", "@")
 SPLIT = re.compile(r"\s*[,;]\s*|\s+")
 NUMBER = re.compile(r"[-+]?(?:\d+\.?\d*|\.\d+)(?:[eE][-+]?\d{1,3})?")

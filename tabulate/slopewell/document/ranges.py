@@ -17,7 +17,7 @@ TOLERANCES = (("tolerance", "energy"), ("force-tolerance", "energy length^-1"))
 
 
 def read_grid(notes: Notes, path: str, entry: Mapping[str, Any], setting: Setting) -> Grid | None:
-    """Return the grid of an interaction, its own or the document's; None, and problems noted, if it has none."""
+    """Return the grid of an interaction, its own or the document's; None, and problems noted, if none."""
     place = f"{path}.grid" if "grid" in entry else "grid"
     given = entry.get("grid", setting.grid)
     if given is None:
@@ -63,7 +63,7 @@ def _tolerance(notes: Notes, path: str, value: Any, powers: str, units: UnitSyst
 def read_cutoff(
     notes: Notes, path: str, entry: Mapping[str, Any], setting: Setting, grid: Grid | None
 ) -> Cutoff | None:
-    """Return the cutoff of an interaction, its own or the document's; None if there is none or it is faulty."""
+    """Return the cutoff of an interaction, its own or the document's; None if there is none, or a fault."""
     place = f"{path}.cutoff" if "cutoff" in entry else "cutoff"
     given = entry.get("cutoff", setting.cutoff)
     if given is None:

@@ -1,4 +1,4 @@
-"""What the parts of a document share while they are read: units, folder, species, and common grid and cutoff."""
+"""What the parts of a document share while they are read: units, folder, species, grid and cutoff."""
 
 from __future__ import annotations
 

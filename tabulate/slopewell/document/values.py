@@ -37,7 +37,7 @@ def exact(value: int | Decimal) -> Fraction:
 
 
 def scale(powers: str, units: UnitSystem) -> Fraction:
-    """Return the document's unit of a dimension such as ``"energy length^6"`` in eV, ångström, dalton and kelvin."""
+    """Return the document's unit of a dimension such as ``"energy length^6"`` in the internal units."""
     factor = Fraction(1)
     sizes = {"energy": units.energy.factor, "length": units.length.factor}
     for word in powers.split():
@@ -47,7 +47,7 @@ def scale(powers: str, units: UnitSystem) -> Fraction:
 
 
 def read_quantity(notes: Notes, path: str, value: Value, powers: str, units: UnitSystem) -> Fraction | None:
-    """Return a value in eV, ångström, dalton and kelvin; None, and a problem noted, if it has another dimension.
+    """Return a value in eV, ångström, dalton and kelvin; None, and a problem noted, if it is of another kind.
 
     Parameters
     ----------

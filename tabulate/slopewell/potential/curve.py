@@ -83,7 +83,7 @@ class Curve:
 
     @cached_property
     def _ends(self) -> tuple[Array, Array]:
-        """The ends of the inner pieces that hold their own end, and of those that do not, widened by ``SNAP``."""
+        """Ends of inner pieces that hold their own end, and of those that do not, widened by ``SNAP``."""
         ends = {
             closed: [float(p.end) for p in self.pieces[:-1] if p.closed == closed] for closed in (True, False)
         }

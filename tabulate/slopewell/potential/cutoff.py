@@ -122,6 +122,6 @@ def _switched(inside: tuple[Piece, ...], cutoff: Cutoff) -> list[Piece]:
 
 
 def switch(start: Fraction, end: Fraction, continuity: int) -> Tree:
-    """Return the weight that falls from 1 at ``start`` to 0 at ``end`` with so many continuous derivatives."""
+    """Return the weight that falls from 1 at ``start`` to 0 at ``end``, so many times differentiable."""
     y = multiply(number(1 / (end - start)), add(number(end), negate(R)))
     return multiply(simplify("^", (y, number(continuity + 1))), polynomial(SWITCHES[continuity], y))

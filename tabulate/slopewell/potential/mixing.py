@@ -115,7 +115,8 @@ RULES = {
         Rule(
             "lorentz-berthelot",
             {"lennard-jones": _LORENTZ},
-            "H. A. Lorentz, Ann. Phys. (Leipzig) 248, 127 (1881); D. Berthelot, C. R. Acad. Sci. 126, 1703 (1898)",
+            "H. A. Lorentz, Ann. Phys. (Leipzig) 248, 127 (1881); "
+            "D. Berthelot, C. R. Acad. Sci. 126, 1703 (1898)",
         ),
         Rule(
             "geometric",
@@ -130,7 +131,7 @@ RULES = {
         Rule(
             "sixth-power",
             {"lennard-jones": _sixth_power("sigma"), "lennard-jones-9-6": _sixth_power("r_m")},
-            "M. Waldman and A. T. Hagler (1993), as H. Sun, J. Phys. Chem. B 102, 7338 (1998) uses it with 9-6",
+            "M. Waldman and A. T. Hagler (1993), with 9-6 as H. Sun, J. Phys. Chem. B 102, 7338 (1998)",
         ),
         Rule(
             "kong",

@@ -42,6 +42,8 @@ class Potential(Shown):
         ``sampling``, ``dynamics`` or ``lattice-dynamics``.
     bridges : tuple of Bridge
         Those between its segments.
+    segments : bool
+        Whether it is made of segments by range.
     splines : tuple of (Points, Curve)
         Points that it goes through or near, and the spline between the first and the last.
     """
@@ -61,6 +63,7 @@ class Potential(Shown):
     energy_scale: Fraction | None = None
     purpose: str = "dynamics"
     bridges: tuple[Bridge, ...] = ()
+    segments: bool = False
     splines: tuple[tuple[Points, Curve], ...] = ()
 
     @property

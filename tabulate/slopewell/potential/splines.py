@@ -1,4 +1,4 @@
-"""Curves through points: splines as polynomial trees, a wall before the first point, a tail beyond the last."""
+"""Curves through points: splines as polynomial trees, a wall before the first, a tail beyond the last."""
 
 from __future__ import annotations
 
@@ -198,7 +198,9 @@ def _wall(curve: Curve, first: Fraction) -> Tree:
 def _tail(curve: Curve, last: Fraction) -> Tree:
     energy, slope = _ends(curve, last)
     if energy * slope >= 0:
-        says = "beyond the last point no inverse power can follow, as energy and slope there do not go to zero together"
+        says = (
+            "beyond the last point no inverse power can follow: energy and slope there do not vanish together"
+        )
         raise SplineError(
             says, 'Add points further out, end the grid at the last one, or write beyond = "zero".'
         )

@@ -1,4 +1,4 @@
-"""Where each pair of a document comes from, what was fitted, and what lies beyond its cutoff, as JSON data and lines."""
+"""Where each pair of a document comes from, what was fitted, and what lies beyond its cutoff."""
 
 from __future__ import annotations
 
@@ -16,6 +16,13 @@ from ..units import UnitSystem
 
 INTEGRABLE = 3.01
 """Inverse power from which on a tail counts as falling fast enough to have a finite integral."""
+
+
+WEIGHTS = {
+    "uniform": "all of one weight",
+    "boltzmann": "with Boltzmann weights",
+    "column": "weighted by its column",
+}
 
 
 def pair_records(document: Document) -> tuple[dict[str, Any], ...]:
@@ -44,7 +51,7 @@ def _plain(parameters: Mapping[str, Any]) -> dict[str, Any]:
 
 
 def fit_record(fit: Fit, units: UnitSystem) -> dict[str, Any]:
-    """Return a fit as JSON data; residuals are in the given units, parameters in those of the document's text."""
+    """Return a fit as JSON data: residuals in the given units, parameters in those of the document's text."""
     energy, length = float(units.energy.factor), float(units.length.factor)
     place, largest = fit.largest
     return {
@@ -53,7 +60,9 @@ def fit_record(fit: Fit, units: UnitSystem) -> dict[str, Any]:
         "points": fit.points,
         "weight": fit.weight,
         "temperature": fit.temperature,
-        "parameters": {p.name: {"value": p.value, "standard_error": p.error, "unit": p.unit} for p in fit.parameters},
+        "parameters": {
+            p.name: {"value": p.value, "standard_error": p.error, "unit": p.unit} for p in fit.parameters
+        },
         "correlations": [list(row) for row in fit.correlations],
         "residual": {
             "root_mean_square": fit.root_mean_square / energy,
@@ -71,45 +80,61 @@ def _tail(potential: Potential, density: float, units: UnitSystem) -> dict[str, 
         return None
     energy, pressure = tail(bare, float(potential.reach), density)
     factor = float(units.length.factor) ** 3
-    return {"number_density": density * factor, "energy": energy / float(units.energy.factor), "pressure_MPa": pressure * 1e3}
+    return {
+        "number_density": density * factor,
+        "energy": energy / float(units.energy.factor),
+        "pressure_MPa": pressure * 1e3,
+    }
 
 
-def pair_lines(record: dict[str, Any], units: Mapping[str, str]) -> list[tuple[str, str]]:
+def pair_lines(record: dict[str, Any], units: UnitSystem) -> list[tuple[str, str]]:
     """Return what is said of a pair as labels and values; nothing of one that is simply stated.
 
     Parameters
     ----------
     record : dict
         One record of :func:`pair_records`.
-    units : mapping
-        Texts of the units of ``energy`` and ``length``.
+    units : UnitSystem
+        Of the document.
     """
     lines = []
     if record["origin"] == "mixed":
         values = ", ".join(f"{name} = {_shown(value)}" for name, value in record["parameters"].items())
         lines.append(("mixed", f"by {record['rule']}: {record['form']} with {values}"))
     for fit in record.get("fits", ()):
-        lines += _fit_lines(fit, units)
+        lines += fit_lines(fit, units)
     if record.get("tail"):
         found = record["tail"]
-        said = f"{found['energy']:.6g} {units['energy']} a particle, {found['pressure_MPa']:.6g} MPa"
-        lines.append(("beyond the cutoff", f"{said}, at {found['number_density']:.6g} {units['length']}^-3"))
+        said = f"{found['energy']:.6g} {units.energy.text} a particle, {found['pressure_MPa']:.6g} MPa"
+        lines.append(
+            ("beyond the cutoff", f"{said}, at {found['number_density']:.6g} {units.length.text}^-3")
+        )
     return lines
 
 
-def _fit_lines(fit: dict[str, Any], units: Mapping[str, str]) -> list[tuple[str, str]]:
-    weight = fit["weight"] if fit["temperature"] is None else f"{fit['weight']} weights at {fit['temperature']:g} K"
+def fit_lines(fit: dict[str, Any], units: UnitSystem) -> list[tuple[str, str]]:
+    """Return what a fit found as labels and values."""
+    weight = WEIGHTS[fit["weight"]] + (f" at {fit['temperature']:g} K" if fit["temperature"] else "")
     lines = [("fitted to", f"{fit['points']} points of {fit['to']}, {weight}")]
     for name, found in fit["parameters"].items():
-        lines.append((f"  {name}", f"{found['value']:.8g} ± {found['standard_error']:.2g} {found['unit']}".rstrip()))
+        lines.append(
+            (f"  {name}", f"{found['value']:.8g} ± {found['standard_error']:.2g} {found['unit']}".rstrip())
+        )
     names = list(fit["parameters"])
     pairs = [(abs(fit["correlations"][i][j]), i, j) for i in range(len(names)) for j in range(i)]
     if pairs:
         _, i, j = max(pairs)
-        lines.append(("  correlation", f"{fit['correlations'][i][j]:.3f} between {names[j]} and {names[i]}, the largest"))
+        lines.append(
+            (
+                "  correlation",
+                f"{fit['correlations'][i][j]:.3f} between {names[j]} and {names[i]}, the largest",
+            )
+        )
     residual = fit["residual"]
-    largest = f"largest {residual['largest']:.3g} at {residual['at']:.4g} {units['length']}"
-    lines.append(("  residual", f"{residual['root_mean_square']:.3g} {units['energy']} root mean square, {largest}"))
+    largest = f"largest {residual['largest']:.3g} at {residual['at']:.4g} {units.length.text}"
+    lines.append(
+        ("  residual", f"{residual['root_mean_square']:.3g} {units.energy.text} root mean square, {largest}")
+    )
     return lines
 
 

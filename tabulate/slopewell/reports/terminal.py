@@ -10,6 +10,7 @@ from rich.text import Text
 
 from ..checks import Finding
 from ..problems import Problem
+from ..units import UnitSystem, unit_system
 from .origins import pair_lines
 from .report import Report, Subject
 
@@ -63,7 +64,7 @@ def print_subject(subject: Subject, console: Console, curves: Curves | None = No
     if subject.title:
         print_indented(Text(subject.title, style="dim"), 2, console)
     certificates = {record["interaction"]: record for record in subject.certificates}
-    pairs = {record["interaction"]: pair_lines(record, subject.landmarks[0]["units"]) for record in subject.pairs}
+    pairs = {record["interaction"]: pair_lines(record, _units(subject)) for record in subject.pairs}
     for record in subject.landmarks:
         print_landmarks(record, console)
         for label, value in pairs.get(record["interaction"], []):
@@ -81,6 +82,11 @@ def print_subject(subject: Subject, console: Console, curves: Curves | None = No
             print_finding(finding, console)
     if subject.accepted:
         console.print(Text(f"  accepted: {', '.join(subject.accepted)}", style="yellow"))
+
+
+def _units(subject: Subject) -> UnitSystem:
+    units = subject.landmarks[0]["units"]
+    return unit_system(units["energy"], units["length"])
 
 
 def print_landmarks(record: dict[str, Any], console: Console) -> None:
@@ -126,10 +132,18 @@ def certificate_lines(record: dict[str, Any]) -> list[tuple[str, str]]:
     if "rows" not in record:
         return []
     length, energy = record["units"]["length"], record["units"]["energy"]
-    lines = [("table", f"{record['rows']} rows even in {EVEN_IN[record['spacing']]}, read by {record['interpolation']}")]
+    lines = [
+        (
+            "table",
+            f"{record['rows']} rows even in {EVEN_IN[record['spacing']]}, read by {record['interpolation']}",
+        )
+    ]
     if record["proved"]:
         lines.append(
-            ("energy error at most", f"{record['energy_error_bound']:.3g} {energy} near {record['energy_error_at']:.4g} {length}")
+            (
+                "energy error at most",
+                f"{record['energy_error_bound']:.3g} {energy} near {record['energy_error_at']:.4g} {length}",
+            )
         )
         lines.append(
             (
@@ -138,7 +152,12 @@ def certificate_lines(record: dict[str, Any]) -> list[tuple[str, str]]:
             )
         )
     if "last_places_off" in record:
-        lines.append(("rows proved", f"{record['rows_proved']}, none more than {record['last_places_off']:g} last places off"))
+        lines.append(
+            (
+                "rows proved",
+                f"{record['rows_proved']}, none more than {record['last_places_off']:g} last places off",
+            )
+        )
     return lines
 
 

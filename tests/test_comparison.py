@@ -1,4 +1,4 @@
-"""Comparing tables: no difference where there is none, and units, shifts and rows named where they explain it."""
+"""Comparing tables: no difference where there is none, and units, shifts and rows named where they do."""
 
 from __future__ import annotations
 
@@ -26,7 +26,9 @@ def force(r: Array) -> Array:
     return np.asarray(0.04 * (12 * (3.4 / r) ** 12 - 6 * (3.4 / r) ** 6) / r)
 
 
-def table(r: Array = R, scale: float = 1.0, shift: float = 0.0, units: str = "eV,angstrom", length: float = 1.0) -> Table:
+def table(
+    r: Array = R, scale: float = 1.0, shift: float = 0.0, units: str = "eV,angstrom", length: float = 1.0
+) -> Table:
     rows = Rows("A-B", r * length, scale * energy(r) + shift, scale * force(r) / length)
     return Table((rows,), unit_system(*units.split(",")))
 
@@ -85,7 +87,15 @@ def test_command_prints_the_result_and_leaves_with_its_status(
     files = [tmp_path / "one.dat", tmp_path / "other.dat"]
     for path, factor in zip(files, (1.0, float(scale)), strict=True):
         np.savetxt(path, np.column_stack([R, factor * energy(R), factor * force(R)]), fmt="%.16e")
-    call = ["compare", *map(str, files), "--columns", "separation,energy,force", "--units", "eV,angstrom", "--json"]
+    call = [
+        "compare",
+        *map(str, files),
+        "--columns",
+        "separation,energy,force",
+        "--units",
+        "eV,angstrom",
+        "--json",
+    ]
 
     assert main(call) == status
     record = json.loads(capsys.readouterr().out)

@@ -52,7 +52,9 @@ def test_units_there_and_back_return_the_numbers(r: list[float], units: str, cha
 
 def test_factor_is_the_exact_one() -> None:
     # 1 hartree = 27.211386245981 eV, CODATA 2022
-    (rows,) = in_units(table(np.array([1.0, 2.0]), np.array([27.211386245981, 0.0]), None), unit_system("hartree", "bohr")).interactions
+    (rows,) = in_units(
+        table(np.array([1.0, 2.0]), np.array([27.211386245981, 0.0]), None), unit_system("hartree", "bohr")
+    ).interactions
 
     assert rows.energy is not None
     assert rows.energy[0] == 1.0
@@ -63,7 +65,12 @@ def test_new_rows_of_a_cubic_add_no_error() -> None:
     new, added = changed(table(r, (3 - r) ** 3, 3 * (3 - r) ** 2), Changes(rows=77, spacing="inverse"))
     (rows,) = new.interactions
 
-    assert (rows.separation.size, rows.separation[0], rows.separation[-1], rows.spacing) == (77, 1.0, 3.0, "inverse")
+    assert (rows.separation.size, rows.separation[0], rows.separation[-1], rows.spacing) == (
+        77,
+        1.0,
+        3.0,
+        "inverse",
+    )
     assert rows.derived == ("energy", "force")
     assert max(added["A-B"]) < 1e-12
 
@@ -80,7 +87,9 @@ def test_tolerance_chooses_rows_that_keep_it() -> None:
 def test_a_missing_column_is_derived_and_marked(missing: str) -> None:
     r = np.linspace(1.0, 3.0, 400)
     whole = {"energy": (3 - r) ** 3, "force": 3 * (3 - r) ** 2}
-    new, _ = changed(table(r, *(None if name == missing else whole[name] for name in whole)), Changes(complete=True))
+    new, _ = changed(
+        table(r, *(None if name == missing else whole[name] for name in whole)), Changes(complete=True)
+    )
     (rows,) = new.interactions
     derived = rows.column(missing)
 
@@ -98,10 +107,24 @@ def test_provenance_says_what_was_done_to_which_file(old: Path, tmp_path: Path) 
     assert again.units == unit_system("kJ/mol", "nm")
 
 
-@pytest.mark.parametrize(("extra", "status"), [([], 1), (["--accept", "force-matches-slope"], 0), (["--mend", "force-sign-flipped"], 0)])
-def test_an_error_must_be_mended_or_accepted(old: Path, tmp_path: Path, extra: list[str], status: int) -> None:
+@pytest.mark.parametrize(
+    ("extra", "status"),
+    [([], 1), (["--accept", "force-matches-slope"], 0), (["--mend", "force-sign-flipped"], 0)],
+)
+def test_an_error_must_be_mended_or_accepted(
+    old: Path, tmp_path: Path, extra: list[str], status: int
+) -> None:
     new = tmp_path / "new.h5"
-    call = ["convert", str(old), str(new), "--columns", "separation,energy,slope", "--units", "eV,angstrom", *extra]
+    call = [
+        "convert",
+        str(old),
+        str(new),
+        "--columns",
+        "separation,energy,slope",
+        "--units",
+        "eV,angstrom",
+        *extra,
+    ]
 
     assert main(call) == status
     assert new.exists() == (status == 0)

@@ -12,7 +12,9 @@ from slopewell.workflow import check
 
 FOLDER = Path(__file__).parent.parent / "samples" / "inherited"
 READING = Reading(("separation", "energy", "force"), "kJ/mol,nm")
-LISTED = re.findall(r"^\| `([\w-]+\.dat)` \| (?:`([\w-]+)`|nothing) \| (yes|) ?\|", (FOLDER / "README.md").read_text(), re.M)
+LISTED = re.findall(
+    r"^\| `([\w-]+\.dat)` \| (?:`([\w-]+)`|nothing) \| (yes|) ?\|", (FOLDER / "README.md").read_text(), re.M
+)
 
 
 def test_page_lists_every_table() -> None:

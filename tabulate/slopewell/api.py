@@ -49,7 +49,10 @@ def make_table(
     UnusableInput
         If the arrays differ in length, or energy and force are both missing.
     """
-    columns = [None if column is None else np.array(column, dtype=np.float64) for column in (separation, energy, force)]
+    columns = [
+        None if column is None else np.array(column, dtype=np.float64)
+        for column in (separation, energy, force)
+    ]
     lengths = {column.shape for column in columns if column is not None}
     if len(lengths) != 1 or any(len(shape) != 1 for shape in lengths):
         raise UnusableInput([Problem("", "The columns differ in length.", "Give arrays of one length.")])
@@ -82,7 +85,9 @@ def check(
     """
     reading = Reading(tuple(columns), units, str(layout), block, purpose)
     found = [
-        check_loaded(Loaded(subject, ""), "") if isinstance(subject, Table) else workflow.check([subject], reading=reading).subjects[0]
+        check_loaded(Loaded(subject, ""), "")
+        if isinstance(subject, Table)
+        else workflow.check([subject], reading=reading).subjects[0]
         for subject in subjects
     ]
     return Report(tuple(found))

@@ -99,7 +99,7 @@ def convert(
     ----------
     source : path or Table
     new : path, optional
-        The file to write; its ending names the format unless a layout is given. Nothing is written without it.
+        The file to write; its ending names the format unless a layout is given. None: write nothing.
     changes : Changes, optional
     reading : Reading, optional
         How a table that slopewell did not write is to be read.
@@ -125,8 +125,13 @@ def convert(
         return Converted(Report((subject,)), loaded.table)
     table, added = changed(loaded.table, wanted)
     if accepted:
-        table = replace(table, history=(*table.history, f"written although these checks found errors: {', '.join(accepted)}"))
-    table = replace(table, writer=f"slopewell {__version__}", constants=table.constants or CODATA, report=stored.record())
+        table = replace(
+            table,
+            history=(*table.history, f"written although these checks found errors: {', '.join(accepted)}"),
+        )
+    table = replace(
+        table, writer=f"slopewell {__version__}", constants=table.constants or CODATA, report=stored.record()
+    )
     if new is None:
         return Converted(Report((subject,)), table, (), added)
     write(table, Path(new), wanted.layout)
@@ -184,10 +189,16 @@ def _tolerance(text: str, units: UnitSystem) -> float | None:
 def in_units(table: Table, units: UnitSystem) -> Table:
     """Return a table in other units: each number multiplied once by the exact ratio of the units."""
     length, energy = ratio(table.units.length, units.length), ratio(table.units.energy, units.energy)
-    factors = {"separation": length, "energy": energy, "force": energy / length, "curvature": energy / length**2}
+    factors = {
+        "separation": length,
+        "energy": energy,
+        "force": energy / length,
+        "curvature": energy / length**2,
+    }
     rows = tuple(_scaled(old, factors) for old in table.interactions)
     says = (
-        f"units {table.units.energy.text}, {table.units.length.text} to {units.energy.text}, {units.length.text}: each "
+        f"units {table.units.energy.text}, {table.units.length.text} to {units.energy.text}, "
+        f"{units.length.text}: each "
         "number multiplied once"
     )
     return replace(table, interactions=rows, units=units, history=(*table.history, says))
@@ -242,11 +253,13 @@ def mended(loaded: Loaded, name: str) -> Loaded:
             continue
         columns = known[name].mend(facts.evidence, chosen.explanation)
         derived = tuple(dict.fromkeys((*old.derived, *columns.derived)))
-        new = {"separation": columns.separation, "energy": columns.energy, "force": columns.force}
-        rows.append(replace(old, **new, curvature=None, derived=derived, certificate={}))
+        new = replace(old, separation=columns.separation, energy=columns.energy, force=columns.force)
+        rows.append(replace(new, curvature=None, derived=derived, certificate={}))
         says.append(f"mended {name} in {old.name}: {columns.says}")
     if not says:
-        shown = f"The checks find {', '.join(sorted(seen))}." if seen else "The checks find no mistake to mend."
+        shown = (
+            f"The checks find {', '.join(sorted(seen))}." if seen else "The checks find no mistake to mend."
+        )
         raise UnusableInput([Problem("--mend", f"No interaction shows {name}.", shown)])
     table = replace(loaded.table, interactions=tuple(rows), history=(*loaded.table.history, *says))
     stored = {} if name in ("columns-exchanged", "rows-offset") else loaded.stored
@@ -275,14 +288,19 @@ def _target(table: Table, path: Path, layout_file: str) -> Target:
         known = format_of(path)
         return Target(path, names, table.units, None, known.write, known.read)
     described: Layout = read_layout(Path(layout_file))
-    writer, reader = partial(layout.write, layout=described), partial(layout.read, layout=described, units=table.units)
+    writer, reader = (
+        partial(layout.write, layout=described),
+        partial(layout.read, layout=described, units=table.units),
+    )
     return Target(path, names, table.units, described, writer, reader)
 
 
 def _known_accepted(names: Iterable[str]) -> None:
     known = [check.name for check in TABLE_CHECKS]
     problems = [
-        Problem("--accept", f'There is no check "{name}".', nearest(name, known)) for name in names if name not in known
+        Problem("--accept", f'There is no check "{name}".', nearest(name, known))
+        for name in names
+        if name not in known
     ]
     if problems:
         raise UnusableInput(problems)

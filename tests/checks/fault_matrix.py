@@ -1,8 +1,8 @@
 """Tables with known mistakes: clean curves × rows × digits × units × mistakes at several strengths.
 
-Run ``python tests/checks/fault_matrix.py`` for the confusion table of a large sample (a number after it sets how
-many cells a mistake has); the tests take a small one. Forces come from complex steps through the energies (W. Squire and G. Trapp, SIAM Rev.
-40, 110 (1998)), so that nothing here rests on the package under test.
+Run ``python tests/checks/fault_matrix.py`` for the confusion table of a large sample (a number after it sets
+how many cells a mistake has); the tests take a small one. Forces come from complex steps through the energies
+(W. Squire and G. Trapp, SIAM Rev. 40, 110 (1998)), so that nothing here rests on the package under test.
 """
 
 from __future__ import annotations
@@ -348,7 +348,11 @@ class Cell:
             return None if self.fault is None else self.fault.rows
         plain = clean(self.curve, self.rows, self.units, self.spacing)
         column = plain.energy if "energy" in self.fault.strength else plain.force
-        return [int(row) + 1 for row in corrupt_rows(self.fault.rows, self.rows) if abs(column[row]) > NOTICED * scale(column)]
+        return [
+            int(row) + 1
+            for row in corrupt_rows(self.fault.rows, self.rows)
+            if abs(column[row]) > NOTICED * scale(column)
+        ]
 
 
 def scale(column: Array) -> float:
@@ -398,7 +402,7 @@ def named(sample: Sample, units: str) -> tuple[str, dict[str, object]]:
 
 
 def verdict(cell: Cell) -> str | None:
-    """Return the name that a cell gets, with what is wrong in its details; None where there is nothing to see."""
+    """Return the name that a cell gets, with what is wrong in its details; None for nothing to see."""
     sample = cell.sample()
     if sample is None or bool(np.any(np.diff(sample.separation) <= 0)):
         return None
@@ -432,9 +436,16 @@ def main(count: int) -> None:
             found = verdict(cell)
             if found is not None:
                 names[found] += 1
-        good = sum(number for name, number in names.items() if name == fault.name or name.startswith(f"{fault.name} with"))
+        good = sum(
+            number
+            for name, number in names.items()
+            if name == fault.name or name.startswith(f"{fault.name} with")
+        )
         right, seen = right + good, seen + sum(names.values())
-        print(f"{fault.name:30}{fault.strength:22}{good:5} of {sum(names.values()):<5}", dict(names) if len(names) > 1 else "")
+        print(
+            f"{fault.name:30}{fault.strength:22}{good:5} of {sum(names.values()):<5}",
+            dict(names) if len(names) > 1 else "",
+        )
     print(f"named first: {right} of {seen}, {right / seen:.2%}")
 
 

@@ -15,7 +15,9 @@ NAMES = ("separation", "energy", "force")
 EXPECTED = [[1.0, 2.0], [1e-3, 30.0], [3.0, -4.0]]
 
 
-def read(folder: Path, text: str | bytes, names: tuple[str, ...] = NAMES, block: int | None = None) -> list[list[float]]:
+def read(
+    folder: Path, text: str | bytes, names: tuple[str, ...] = NAMES, block: int | None = None
+) -> list[list[float]]:
     path = folder / "old.dat"
     path.write_bytes(text if isinstance(text, bytes) else text.encode())
     return [column.tolist() for column in read_columns(path, names, block).values()]

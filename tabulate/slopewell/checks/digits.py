@@ -47,7 +47,8 @@ class Digits:
             leading = np.floor(np.log10(np.maximum(size, TINIEST))).astype(np.intp)
         place = np.clip(leading + 1 - self.significant, -LARGEST_POWER, LARGEST_POWER)
         step = np.maximum(POWERS[place + LARGEST_POWER], 10.0 ** float(np.clip(-self.decimals, -300, 300)))
-        return np.maximum(step / 2, EPSILON / 2 * size)
+        rounding: Array = np.maximum(step / 2, EPSILON / 2 * size)
+        return rounding
 
 
 def digits(column: Array) -> Digits:

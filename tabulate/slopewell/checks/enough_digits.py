@@ -42,7 +42,8 @@ def look(facts: TableFacts) -> Iterator[Finding]:
         yield Finding(
             level=WARNING,
             mistake="too-few-digits" if _coarse(facts, column, well, scale) else None,
-            says=f"The digits of the {column} put a noise of {worst:.2g} {unit} into {what}; the largest attraction is "
+            says=f"The digits of the {column} put a noise of {worst:.2g} {unit} into {what}; the largest "
+            "attraction is "
             f"{scale:.3g} {unit}.",
             remedy=f"Ask for {missing} more digit{'s' if missing > 1 else ''} of the {column}"
             + (", or use fewer rows." if column == "energy" else "."),

@@ -105,8 +105,10 @@ def _unexplained(finding: Finding, evidence: Evidence, subject: str) -> Finding:
     length, force = evidence.units.length.text, evidence.units.force.text
     return replace(
         finding,
-        says=f"At {evidence.separation[most]:.6g} {length} {subject} is {stated:.7g} {force}, minus the slope of the energy "
-        f"is {expected:.7g} {force}; {evidence.wrong.size} of {evidence.force.size} separations disagree, and no "
+        says=f"At {evidence.separation[most]:.6g} {length} {subject} is {stated:.7g} {force}, minus the "
+        "slope of the energy "
+        f"is {expected:.7g} {force}; {evidence.wrong.size} of {evidence.force.size} separations "
+        "disagree, and no "
         "known mistake explains them.",
         remedy="Find out how the force was made; or take the energy alone and let the force follow from it.",
         measured=abs(stated - expected) / abs(expected) if expected else None,

@@ -14,7 +14,11 @@ def look_at_core(facts: TableFacts) -> Iterator[Finding]:
     first = facts.landmarks.turns[0] if facts.landmarks.turns else None
     rising = first is not None and not first.minimum
     if first is None:
-        rising = bool(energy[0] < energy[-1] - 4 * facts.rounding["energy"][0] if "energy" in facts.rounding else energy[0] < energy[-1])
+        rising = bool(
+            energy[0] < energy[-1] - 4 * facts.rounding["energy"][0]
+            if "energy" in facts.rounding
+            else energy[0] < energy[-1]
+        )
     if not rising:
         return
     if first is None:
@@ -51,8 +55,14 @@ def look_for_wells(facts: TableFacts) -> Iterator[Finding]:
 
 
 CORE_CHECK: Check[TableFacts] = Check(
-    "repulsive-core", "The rows repel from the first one on", look_at_core, requires=("rows-readable", "rows-ordered")
+    "repulsive-core",
+    "The rows repel from the first one on",
+    look_at_core,
+    requires=("rows-readable", "rows-ordered"),
 )
 WELL_CHECK: Check[TableFacts] = Check(
-    "single-well", "There is no more than one well", look_for_wells, requires=("rows-readable", "rows-ordered")
+    "single-well",
+    "There is no more than one well",
+    look_for_wells,
+    requires=("rows-readable", "rows-ordered"),
 )

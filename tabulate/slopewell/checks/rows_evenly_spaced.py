@@ -69,12 +69,17 @@ def look(facts: TableFacts) -> Iterator[Finding]:
     if best is not None and not best.failures:
         return
     if best is None or best.failures > max(3, MOST_OFF * r.size):
-        words = f"are not even in {WORDS[claimed]}, as the table claims" if claimed else "keep none of the usual rules"
+        words = (
+            f"are not even in {WORDS[claimed]}, as the table claims"
+            if claimed
+            else "keep none of the usual rules"
+        )
         steps = np.diff(r)
         yield Finding(
             level=ERROR if claimed else NOTE,
             says=f"The rows {words} (steps from {steps.min():.6g} to {steps.max():.6g} {unit}).",
-            remedy="A code that counts rows instead of reading separations needs them even: slopewell convert --rows.",
+            remedy="A code that counts rows instead of reading separations needs them even: slopewell "
+            "convert --rows.",
             start=float(r[0]),
             end=float(r[-1]),
         )
@@ -99,7 +104,8 @@ def _flaws(best: Fit, r: Array, unit: str, level: str) -> Iterator[Finding]:
         after = (best.gaps + 1).tolist()
         yield Finding(
             level=level,
-            says=f"The rows are even in {rule}, but {best.missing} {'is' if best.missing == 1 else 'are'} missing: after row "
+            says=f"The rows are even in {rule}, but {best.missing} "
+            f"{'is' if best.missing == 1 else 'are'} missing: after row "
             f"{', '.join(map(str, after[:8]))}.",
             remedy="Restore the missing rows, or write new ones by slopewell convert --rows.",
             start=float(r[best.gaps[0]]),
@@ -113,7 +119,8 @@ def _flaws(best: Fit, r: Array, unit: str, level: str) -> Iterator[Finding]:
         rows = (best.off + 1).tolist()
         yield Finding(
             level=level,
-            says=f"The rows are even in {rule}, but row {', '.join(map(str, rows[:8]))} {'is' if len(rows) == 1 else 'are'} off.",
+            says=f"The rows are even in {rule}, but row {', '.join(map(str, rows[:8]))} "
+            f"{'is' if len(rows) == 1 else 'are'} off.",
             remedy="Correct these separations.",
             start=float(r[best.off[0]]),
             end=float(r[best.off[-1]]),

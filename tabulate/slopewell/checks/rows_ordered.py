@@ -28,7 +28,11 @@ def look(facts: TableFacts) -> Iterator[Finding]:
         return
     for wrong, what, remedy in (
         (step == 0, "repeats the separation before it", "Take the doubled rows out, or print more digits."),
-        (step < 0, "goes back in separation", "Put the rows in order; are there two tables in the file (--block)?"),
+        (
+            step < 0,
+            "goes back in separation",
+            "Put the rows in order; are there two tables in the file (--block)?",
+        ),
     ):
         rows = np.flatnonzero(wrong) + 2
         if rows.size:

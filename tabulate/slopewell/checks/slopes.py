@@ -31,7 +31,7 @@ STRIDE_RATIO = 3
 DROWNED = 0.1
 """Part of a band from which on rounding is worth a wider stride."""
 WORTHWHILE, RARELY = 1e-6, 0.02
-"""No wider stride is tried when rounding costs more than this part of the slope on fewer than so many rows."""
+"""No wider stride is tried when rounding costs this part of the slope on fewer than so many rows."""
 CENTRED = {4: (0, 8, 1), 6: (0, 45, 9, 1)}
 SIDED = {4: (25, 48, 36, 16, 3), 6: (147, 360, 450, 400, 225, 72, 10)}
 DENOMINATORS = {4: 12, 6: 60}
@@ -93,7 +93,8 @@ def slopes(separation: Array, energy: Array, energy_noise: Array, separation_noi
 def _steepness(separation: Array, energy: Array) -> Array:
     """Return the larger of the two neighbouring difference quotients, in size."""
     steps = np.abs(np.diff(energy) / np.diff(separation))
-    return np.maximum(np.append(steps, steps[-1:]), np.insert(steps, 0, steps[:1]))
+    larger: Array = np.maximum(np.append(steps, steps[-1:]), np.insert(steps, 0, steps[:1]))
+    return larger
 
 
 def _strides(rows: int) -> Iterator[int]:
@@ -164,11 +165,12 @@ class _Strided:
             for side in sides
         ]
         gap = gaps[0] if len(gaps) == 1 else np.minimum(*gaps)
-        return total / (DENOMINATORS[order] * gap)
+        cost: Array = total / (DENOMINATORS[order] * gap)
+        return cost
 
 
 def widest(movement: Array, stride: int) -> Array:
-    """Return, for each row, the largest value of the row and its neighbours, so that no lucky small one counts."""
+    """Return the largest value of each row and its neighbours, so that no lucky small one counts."""
     result = movement.copy()
     np.maximum(result[stride:], movement[:-stride], out=result[stride:])
     np.maximum(result[:-stride], movement[stride:], out=result[:-stride])

@@ -28,7 +28,7 @@ MOST_TRIED = 60
 def predicted(separation: Array, column: Array) -> tuple[Array, Array]:
     """Return what the neighbours of each row predict for it, and the doubt about that.
 
-    The row itself enters neither. Rows near the ends, and those that cannot be predicted, have infinite doubt.
+    The row itself enters neither. Rows near the ends, and unpredictable ones, have infinite doubt.
     """
     values, doubt = np.zeros_like(column), np.full_like(column, np.inf)
     size = column.size
@@ -55,7 +55,9 @@ def _lagrange(separation: Array, column: Array, nodes: tuple[int, ...]) -> Array
         weight = np.ones_like(here)
         for other in nodes:
             if other != node:
-                weight = weight * ((here - at(separation, other)) / (at(separation, node) - at(separation, other)))
+                weight = weight * (
+                    (here - at(separation, other)) / (at(separation, node) - at(separation, other))
+                )
         total += weight * at(column, node)
     return total
 
@@ -72,7 +74,9 @@ def candidates(separation: Array, column: Array, noise: Array) -> tuple[Numbers,
     return local[np.argsort(-ratio[local])][:MOST_TRIED], values
 
 
-def energy_spikes(separation: Array, energy: Array, force: Array, noise: Array, slopes_of: SlopesOf) -> Numbers:
+def energy_spikes(
+    separation: Array, energy: Array, force: Array, noise: Array, slopes_of: SlopesOf
+) -> Numbers:
     """Return the rows whose energy is corrupted: once it is replaced, slopes and forces agree all around.
 
     Parameters
@@ -127,6 +131,8 @@ def _area(separation: Array, force: Array) -> float:
     """Return the integral over the two middle intervals of the polynomial through all rows."""
     shift = separation - separation[AROUND]
     scale = float(np.abs(shift).max())
-    powers = np.polynomial.polynomial.Polynomial(np.linalg.solve(np.vander(shift / scale, increasing=True), force)).integ()
+    powers = np.polynomial.polynomial.Polynomial(
+        np.linalg.solve(np.vander(shift / scale, increasing=True), force)
+    ).integ()
     low, high = shift[AROUND - 1] / scale, shift[AROUND + 1] / scale
     return float(powers(high) - powers(low)) * scale

@@ -24,7 +24,7 @@ Array = NDArray[np.float64]
 TERMS = 8.0
 """Units in the last place of the largest term that a clean number may be off by."""
 NEGLIGIBLE = 3e-8
-"""Part of the largest term of a force below which a difference is no mistake of the kinds that are looked for."""
+"""Part of the largest term of a force below which a difference is no mistake that anybody makes."""
 ROOM_TEMPERATURE = 300
 """In kelvin: the energy scale of a table without a well."""
 
@@ -92,7 +92,11 @@ class TableFacts:
 
 
 def rows_evidence(
-    separation: Array, energy: Array, force: Array, units: UnitSystem, rounding: Mapping[str, Array] | None = None
+    separation: Array,
+    energy: Array,
+    force: Array,
+    units: UnitSystem,
+    rounding: Mapping[str, Array] | None = None,
 ) -> Evidence:
     """Return stated against expected forces of rows.
 
@@ -113,7 +117,12 @@ def rows_evidence(
 
 
 def _evidence(
-    separation: Array, energy: Array, force: Array, units: UnitSystem, rounding: Mapping[str, Array], found: Slopes
+    separation: Array,
+    energy: Array,
+    force: Array,
+    units: UnitSystem,
+    rounding: Mapping[str, Array],
+    found: Slopes,
 ) -> Evidence:
     turned = {"separation": rounding["separation"], "energy": rounding["force"], "force": rounding["energy"]}
     plain = Evidence(
@@ -152,7 +161,7 @@ def _spikes(evidence: Evidence, rounding: Mapping[str, Array]) -> dict[str, NDAr
 
 
 def _slopes(separation: Array, energy: Array, rounding: Mapping[str, Array]) -> Slopes:
-    """Return slopes of rows, their band widened by what the rounding of a separation does to the slope there."""
+    """Return slopes of rows, their band widened by what the rounding of a separation does to them."""
     own = rounding["separation"]
     with np.errstate(all="ignore"):
         steep, bend = _size_of_slope(separation, energy), _size_of_bend(separation, energy)
@@ -168,7 +177,8 @@ def integral(separation: Array, force: Array) -> Array:
     from scipy.interpolate import CubicSpline
 
     area: Array = CubicSpline(separation, force).antiderivative()(separation)
-    return area[-1] - area
+    energy: Array = area[-1] - area
+    return energy
 
 
 def _size_of_slope(separation: Array, energy: Array) -> Array:

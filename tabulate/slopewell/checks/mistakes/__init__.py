@@ -1,8 +1,8 @@
 """Name the mistake behind forces that are not minus the slope of their energies.
 
 A mistake is one function from evidence to explanations. Each predicts the forces that it would have made;
-the one whose predictions meet the stated forces is named. To add one, write its function and how to undo it, and add a line to
-``MISTAKES``.
+the one whose predictions meet the stated forces is named. To add one, write its function and how to
+undo it, and add a line to ``MISTAKES``.
 """
 
 from __future__ import annotations
@@ -61,7 +61,7 @@ MISTAKES = (
 
 @dataclass(frozen=True)
 class Diagnosis:
-    """An explanation with the name of its mistake and how well it fits: 0 is exact, 1 the edge of the band."""
+    """An explanation with the name of its mistake and its misfit: 0 is exact, 1 the edge of the band."""
 
     mistake: str
     explanation: Explanation

@@ -26,7 +26,8 @@ def exchanged(evidence: Evidence) -> Iterator[Explanation]:
             np.where(np.isfinite(other.band), 1e-300, np.inf),
             "The columns are exchanged: what is called energy is minus the slope of what is called force."
             if turn > 0
-            else "The columns are exchanged, and the sign is flipped: what is called energy is the slope of what is called force.",
+            else "The columns are exchanged, and the sign is flipped: what is called energy is the slope of "
+            "what is called force.",
             "Exchange the names of the two columns.",
             details={} if turn > 0 else {"also": ["force-sign-flipped"]},
             weight=0.5 if turn < 0 else 0.0,
@@ -42,7 +43,7 @@ def _plausible(evidence: Evidence) -> bool:
     if not told.size:
         return False
     low, high = np.quantile(told, (0.3, 0.7))
-    return bool(0.7 < low and high < 1.4)
+    return bool(low > 0.7 and high < 1.4)
 
 
 def constant_offset(evidence: Evidence) -> Iterator[Explanation]:
@@ -59,7 +60,8 @@ def constant_offset(evidence: Evidence) -> Iterator[Explanation]:
         yield Explanation(
             evidence.expected + added,
             evidence.band + evidence.rounding,
-            f"All forces are off by {offset:.6g} {evidence.units.force.text}: one of the two columns was shifted to zero "
+            f"All forces are off by {offset:.6g} {evidence.units.force.text}: one of the two columns was "
+            "shifted to zero "
             "force at the cutoff, the other was not.",
             "Subtract this force, or add its potential (force times distance to the cutoff) to the energy.",
             measured=offset,

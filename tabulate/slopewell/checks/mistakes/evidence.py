@@ -62,17 +62,20 @@ class Evidence:
 
     @cached_property
     def wrong(self) -> Numbers:
-        """The rows that contradict their slope, if any does so clearly, and those that do not fit their neighbours."""
+        """The rows that clearly contradict their slope, and those that do not fit their neighbours."""
         found = np.flatnonzero(self.excess > 1.0)
         clear = found.size > 1 or float(self.excess.max(initial=0.0)) > CLEAR
-        return np.union1d(found if clear else found[:0], [row for rows in self.spikes.values() for row in rows]).astype(np.intp)
+        spiking = [row for rows in self.spikes.values() for row in rows]
+        wrong: Numbers = np.union1d(found if clear else found[:0], spiking).astype(np.intp)
+        return wrong
 
     @cached_property
     def sample(self) -> Numbers:
         """Wrong rows, thinned, that explanations are tried on first."""
         if self.wrong.size <= MOST_LOOKED_AT:
             return self.wrong
-        return self.wrong[np.linspace(0, self.wrong.size - 1, MOST_LOOKED_AT).astype(int)]
+        thinned: Numbers = self.wrong[np.linspace(0, self.wrong.size - 1, MOST_LOOKED_AT).astype(int)]
+        return thinned
 
     @cached_property
     def live(self) -> int:

@@ -87,8 +87,10 @@ def counted_twice(evidence: Evidence) -> Iterator[Explanation]:
         evidence,
         np.ones_like(evidence.force),
         known,
-        f"The force is {how} what the slope of the energy says{flipped}, as when pairs are counted twice in one column.",
-        f"Divide the force by {known:g}, or multiply the energy by it: only the source tells which column is right.",
+        f"The force is {how} what the slope of the energy says{flipped}, as when pairs are counted twice "
+        "in one column.",
+        f"Divide the force by {known:g}, or multiply the energy by it: only the source tells which "
+        "column is right.",
         details={"factor": known} | ({"also": ["force-sign-flipped"]} if known < 0 else {}),
     )
 
@@ -109,7 +111,8 @@ def other_units(evidence: Evidence) -> Iterator[Explanation]:
             evidence,
             np.ones_like(evidence.force),
             factor.measured,
-            f"The force is {factor.measured:.6g} times what the slope of the energy says; no two usual units have this "
+            f"The force is {factor.measured:.6g} times what the slope of the energy says; no two usual "
+            "units have this "
             "ratio.",
             "Divide the force by this factor, once its origin is known.",
             details={"factor": factor.measured, "likely": "a factor of unknown origin"} | also,
@@ -144,14 +147,18 @@ def unit_readings(evidence: Evidence, factor: Factor) -> tuple[float, str] | Non
     wanted = abs(factor.measured)
     found: list[tuple[float, float, str]] = []
     for ratio, first, second in _ratios(ENERGIES):
-        # More units in the number of the force: the force is in the smaller unit, or the energy in the larger.
+        # A force that is too large is in the smaller unit, or the energy is in the larger one.
         far = 0.0 if own_energy in (first, second) else 1.0
-        says = f"the force is in {second} where the energy is in {first}, or the energy in {first} where the force is in {second}"
+        says = (
+            f"the force is in {second} where the energy is in {first}, or the energy in {first} where "
+            f"the force is in {second}"
+        )
         found.append((ratio, far, says))
     for ratio, first, second in _ratios(LENGTHS):
         far = 0.0 if own_length in (first, second) else 1.0
         says = (
-            f"the force is per {second} where the separation is in {first}, or the separation is in {first} where the "
+            f"the force is per {second} where the separation is in {first}, or the separation is in "
+            f"{first} where the "
             f"force is per {second}"
         )
         found.append((1 / ratio, far, says))
@@ -175,7 +182,8 @@ def unit_readings(evidence: Evidence, factor: Factor) -> tuple[float, str] | Non
 
 
 def _both(energy: str, other_energy: str, length: str, other_length: str) -> str:
-    return f"the force is in {other_energy}/{other_length} where energy and separation are in {energy} and {length}"
+    force = f"{other_energy}/{other_length}"
+    return f"the force is in {force} where energy and separation are in {energy} and {length}"
 
 
 def _nearest(
@@ -202,7 +210,8 @@ def slope_per_squared(evidence: Evidence) -> Iterator[Explanation]:
         evidence,
         1 / evidence.separation,
         (0.5, -0.5),
-        "The stated force is the slope with respect to the squared separation, dU/d(r²) = (dU/dr)/(2r), up to its sign.",
+        "The stated force is the slope with respect to the squared separation, dU/d(r²) = (dU/dr)/(2r), "
+        "up to its sign.",
         "Multiply it by −2r (2r if it is minus that slope).",
     )
 

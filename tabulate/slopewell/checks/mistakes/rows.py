@@ -59,7 +59,9 @@ class _Halves:
         wide = np.maximum(band[:-1], band[1:])
         self.middles = []
         if x.size >= 4:
-            around = np.maximum(wide, np.maximum(np.append(wide[1:], np.inf), np.insert(wide[:-1], 0, np.inf)))
+            around = np.maximum(
+                wide, np.maximum(np.append(wide[1:], np.inf), np.insert(wide[:-1], 0, np.inf))
+            )
             # Half-way in separation, and half-way in what the rows are even in.
             for weights in (_middle_weights(r), (-1 / 16, 9 / 16, 9 / 16, -1 / 16)):
                 between = (x[:-1] + x[1:]) / 2
@@ -76,7 +78,9 @@ class _Halves:
     def best(self, offsets: list[int], chosen: NDArray[np.intp], count: int) -> list[int]:
         """Return the offsets, in half rows, that leave the fewest of some wrong rows wrong."""
         scored = [
-            (score, abs(twice), twice) for twice in offsets if (score := self._score(twice, chosen)) is not None
+            (score, abs(twice), twice)
+            for twice in offsets
+            if (score := self._score(twice, chosen)) is not None
         ]
         return [twice for _, _, twice in sorted(scored)[:count]]
 
@@ -147,7 +151,8 @@ def corrupted_rows(evidence: Evidence, wrong: NDArray[np.intp]) -> Explanation:
         predicted,
         band,
         f"{'Rows' if several else 'Row'} {shown} (of {evidence.force.size}) "
-        f"{'do' if several else 'does'} not fit {'their' if several else 'its'} neighbours; all others agree.",
+        f"{'do' if several else 'does'} not fit {'their' if several else 'its'} neighbours; all others "
+        "agree.",
         "Recompute these rows, or take them out and interpolate.",
         measured=float(len(numbers)),
         details={"rows": numbers, "columns": _columns(evidence, wrong)},

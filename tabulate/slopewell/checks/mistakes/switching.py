@@ -16,7 +16,7 @@ LEAST_ROWS, LEAST_SOUND = 2, 3
 ENDED = 0.75
 """Weight of the switch below which it counts as having run to its end within the wrong rows."""
 SOLID = 0.5
-"""Part of the rows between the first and the last wrong one that must be wrong: one window, no single rows."""
+"""Part of the rows from the first to the last wrong one that must be wrong: a window, no single rows."""
 FAINT = 0.05
 """Part of the largest energy in the window below which an energy says nothing of the switch."""
 SLACK = 0.05
@@ -47,7 +47,8 @@ def slope_missing(evidence: Evidence) -> Iterator[Explanation]:
         yield Explanation(
             predicted,
             np.maximum(evidence.band + evidence.rounding, 1e-300),
-            f"From about {start:.6g} {unit} on the energy is switched off, but the force {how}; before that they agree.",
+            f"From about {start:.6g} {unit} on the energy is switched off, but the force {how}; before "
+            "that they agree.",
             "Take the force as minus the slope of the switched energy: S·F − S′·U with the switch S.",
             measured=start,
             unit=unit,
@@ -57,7 +58,7 @@ def slope_missing(evidence: Evidence) -> Iterator[Explanation]:
 
 
 def _of_slope(evidence: Evidence, window: Numbers) -> Array | None:
-    """Return the switch S that a missing −S′U would need: ln S is the integral of the disagreement per energy."""
+    """Return the switch S that a missing −S′U would need: ln S is the integral of the gap per energy."""
     gap = (evidence.force - evidence.expected)[window]
     energy = evidence.energy[window]
     clear = evidence.excess[window] > 1

@@ -21,7 +21,6 @@ Array = NDArray[np.float64]
 
 COMMENTS = ("#", "!", ";", "//", "@")
 PLAIN = b"0123456789+-.eE \t\r\n"
-EMPTY_LINE = re.compile(rb"\n[ \t\r]*\n")
 MARKS = (b"\xef\xbb\xbf", b"\xff\xfe", b"\xfe\xff")
 """Byte order marks."""
 NUMBER = re.compile(
@@ -128,11 +127,7 @@ def _plain(path: Path, raw: bytes, count: int) -> Array | None:
         start = end + 1
     body = raw[start:]
     separator = next((mark for mark in ",;" if mark.encode() in body[:2000]), None)
-    if (
-        not body
-        or body.translate(None, PLAIN + (separator or "").encode())
-        or EMPTY_LINE.search(body.rstrip())
-    ):
+    if not body or body.translate(None, PLAIN + (separator or "").encode()):
         return None
     try:
         head = raw.count(b"\n", 0, start)
@@ -142,7 +137,9 @@ def _plain(path: Path, raw: bytes, count: int) -> Array | None:
         )
     except ValueError:
         return None
-    return np.asarray(numbers, dtype=np.float64) if numbers.shape[1] == count else None
+    # An empty line gives no row: then the rows may be several blocks.
+    whole = numbers.shape == (body.rstrip().count(b"\n") + 1, count)
+    return np.asarray(numbers, dtype=np.float64) if whole else None
 
 
 def _tokens(line: str) -> list[str]:

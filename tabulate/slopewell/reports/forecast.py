@@ -238,7 +238,8 @@ def trial_lines(title: str, record: Row) -> Iterator[str]:
     yield ""
     yield (
         f"  A run of {growth['length']:g} ns {VERDICTS[record['verdict']]} ({record['verdict']}): "
-        f"{growth['value']:.2g} k_B*T a particle."
+        f"{growth['value']:.2g} k_B*T a particle for certain, "
+        f"up to {max(growth['value'], growth['possible']):.2g} by faults of the table."
     )
     if record["notes"]:
         yield ""

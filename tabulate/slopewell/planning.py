@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+import os
 from collections.abc import Callable, Iterable, Iterator
 from dataclasses import dataclass
 from fractions import Fraction
@@ -16,6 +17,8 @@ from .table.rules import RULES
 from .units import UnitSystem, dimension, quantity
 
 BYTES_A_NUMBER = 8
+WORTH_PROCESSES = 4
+"""Interactions from which on starting further processes is worth its second."""
 
 
 @dataclass(frozen=True, slots=True)
@@ -78,16 +81,40 @@ def plan(
     """
     document = read_document(path)
     stated = None if tolerance is None else _energy(tolerance)
-    plans: list[Plan] = []
-    for interaction in track(document.interactions, "planning"):
-        wanted = stated or interaction.grid.tolerance
-        if wanted is None:
+    wanted: list[Fraction] = []
+    for interaction in document.interactions:
+        found = stated or interaction.grid.tolerance
+        if found is None:
             says = f"{interaction.potential.name} has no tolerance to plan for."
-            raise UnusableInput(
-                [Problem("grid.tolerance", says, 'Give --tolerance "1e-6 kJ/mol", or one in the grid.')]
-            )
-        plans += plans_of(interaction, document.units, wanted)
+            remedy = 'Give --tolerance "1e-6 kJ/mol", or one in the grid.'
+            raise UnusableInput([Problem("grid.tolerance", says, remedy)])
+        wanted.append(found)
+    plans: list[Plan] = []
+    for group in track(_groups(document, path, wanted), "planning"):
+        plans += group
     return document, plans
+
+
+def _groups(document: Document, path: str | Path, wanted: list[Fraction]) -> Iterable[list[Plan]]:
+    """Yield the plans of each interaction, worked out on all processors where there are several."""
+    workers = min(os.cpu_count() or 1, len(wanted))
+    if len(wanted) < WORTH_PROCESSES or workers < 2:
+        return (list(plans_of(i, document.units, t)) for i, t in zip(document.interactions, wanted, strict=True))
+    return _by_processes(path, wanted, workers)
+
+
+def _by_processes(path: str | Path, wanted: list[Fraction], workers: int) -> Iterator[list[Plan]]:
+    import multiprocessing
+    from concurrent.futures import ProcessPoolExecutor
+
+    with ProcessPoolExecutor(workers, multiprocessing.get_context("spawn")) as pool:
+        yield from pool.map(plans_of_one, [path] * len(wanted), range(len(wanted)), wanted)
+
+
+def plans_of_one(path: str | Path, index: int, tolerance: Fraction) -> list[Plan]:
+    """Return the plans of one interaction of a document, read anew: a process of its own calls this."""
+    document = read_document(path)
+    return list(plans_of(document.interactions[index], document.units, tolerance))
 
 
 def _energy(text: str) -> Fraction:

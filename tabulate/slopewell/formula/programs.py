@@ -159,10 +159,20 @@ def whole_power(x: Series, n: int) -> Series:
 def _tang_toennies(n: int) -> Operation:
     def damping(x: Series) -> Series:
         slope = whole_power(x, n) * (-x).exp() * arb_series([1 / arb(factorial(n))])
-        low, high = (arb(edge).gamma_lower(n + 1, regularized=1) for edge in (x[0].lower(), x[0].upper()))
+        low, high = (_tang_toennies_at(n, edge) for edge in (x[0].lower(), x[0].upper()))
         return _primitive(slope, x, low.union(high))
 
     return damping
+
+
+def _tang_toennies_at(n: int, x: Ball) -> Ball:
+    """Return the damping function at one point, by its sum where that loses few digits."""
+    if x < 1:
+        return arb(x).gamma_lower(n + 1, regularized=1)
+    total = arb(1)
+    for k in range(n, 0, -1):
+        total = 1 + total * x / k
+    return 1 - (-x).exp() * total
 
 
 def _primitive(slope: Series, x: Series, head: Ball) -> Series:

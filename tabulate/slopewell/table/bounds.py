@@ -100,8 +100,8 @@ class ErrorBounds:
             Of the digits that a text layout prints.
         """
         rule, grid, slopes = self._setting(rows, spacing, rule_name, ends)
-        energy = self.cut_until_sharp(grid, self.energy_size(grid, rule, slopes, rounding))
-        force = self.cut_until_sharp(grid, self.force_size(grid, rule, slopes, rounding))
+        energy = self.largest_energy(grid, rule, slopes, rounding)
+        force = self.largest_force(grid, rule, slopes, rounding)
         drift = self.cut_until_sharp(grid, self.drift_size(grid, rule.drift))[0] if rule.drift else 0.0
         for edge in edge_bounds(self.curve, grid, rule, (energy[0], force[0])):
             off = slopes.about(edge.at, edge.at)
@@ -110,12 +110,18 @@ class ErrorBounds:
             drift = max(drift, edge.drift if rule.drift else 0.0)
         return Bound(*energy, *force, drift)
 
-    def energy_bound(self, rows: int, spacing: str, rule_name: str, ends: str = "clamped") -> float:
-        """Return the bound of the energy error alone, which a search for a row count asks for often."""
+    def energy_bound(
+        self, rows: int, spacing: str, rule_name: str, ends: str = "clamped", *, edges: bool = True
+    ) -> float:
+        """Return the bound of the energy error alone, which a search for a row count asks for often.
+
+        Without ``edges`` it leaves out the intervals about edges between pieces, which cost the most.
+        """
         rule, grid, slopes = self._setting(rows, spacing, rule_name, ends)
-        energy, _ = self.cut_until_sharp(grid, self.energy_size(grid, rule, slopes, EXACT))
-        for edge in edge_bounds(self.curve, grid, rule, (energy, inf)):
-            energy = max(energy, edge.energy + SLOPE_IN_ENERGY * edge.length * slopes.about(edge.at, edge.at))
+        energy, _ = self.largest_energy(grid, rule, slopes, EXACT)
+        for edge in edge_bounds(self.curve, grid, rule, (energy, inf)) if edges else ():
+            off = slopes.about(edge.at, edge.at)
+            energy = max(energy, edge.energy + SLOPE_IN_ENERGY * edge.length * off)
         return energy
 
     def _setting(
@@ -125,65 +131,94 @@ class ErrorBounds:
         slopes = self.slopes(grid, ends) if rule_name == "cubic-spline" else NO_SLOPE_ERRORS
         return RULES[rule_name], grid, slopes
 
-    def cut_until_sharp(self, grid: Spacing, size: Size) -> tuple[float, float]:
-        """Return the largest size and where it lies, cutting stretches until it is sharp."""
+    def cut_until_sharp(
+        self, grid: Spacing, size: Size, directly: Callable[[int], float] | None = None
+    ) -> tuple[float, float]:
+        """Return the largest size and where it lies, cutting stretches until it is sharp.
+
+        Where a stretch is as fine as the rows and the bound still is not sharp, the row interval is
+        too long for its derivatives to tell: then ``directly`` encloses its error itself.
+        """
         sizes = [size(index) for index in range(len(self.stretches))]
         reached = max((low for _, low in sizes), default=0.0)
+        enclosed: set[float] = set()
         for _ in range(MOST_CUTS):
             top = max(range(len(sizes)), key=sizes.__getitem__)
             if sizes[top][0] <= SHARP * reached:
                 break
-            reach = grid.at((self.stretches[top].low + self.stretches[top].high) / 2) / 2
-            near = [top, *self._beside(top, reach)]
-            widest = max(near, key=lambda index: self.stretches[index].high - self.stretches[index].low)
-            part = self.stretches[widest]
-            if part.high - part.low < max(reach / FINEST, 1e-6 * part.high):
-                break
-            self.stretches[widest : widest + 1] = part.halves()
-            sizes[widest : widest + 1] = [(0.0, 0.0), (0.0, 0.0)]
-            for index in {i + (i > widest) for i in near} | {widest, widest + 1}:
-                sizes[index] = size(index)
-                reached = max(reached, sizes[index][1])
+            widest = self._to_cut(top, grid)
+            if widest is None:
+                place = self.stretches[top].low
+                if directly is None or place in enclosed or len(enclosed) == MOST_DIRECT:
+                    break
+                enclosed.add(place)
+                bound = min(sizes[top][0], directly(top))
+                sizes[top], reached = (bound, bound / SHARP), max(reached, bound / SHARP)
+                continue
+            self.stretches[widest : widest + 1] = self.stretches[widest].halves()
+            sizes[widest : widest + 1] = [size(widest), size(widest + 1)]
+            changed = {widest, widest + 1, top + (top > widest)}
+            sizes[top + (top > widest)] = size(top + (top > widest))
+            reached = max(reached, *(sizes[index][1] for index in changed))
         top = max(range(len(sizes)), key=sizes.__getitem__)
         part = self.stretches[top]
         return sizes[top][0], (part.low + part.high) / 2
 
-    def energy_size(self, grid: Spacing, rule: Rule, slopes: SlopeErrors, rounding: Rounding) -> Size:
-        """Return the size of the energy error on the intervals whose middle lies in a stretch."""
+    def _to_cut(self, top: int, grid: Spacing) -> int | None:
+        """Return the widest stretch that the bound of one depends on; None if all are finer than the rows."""
+        part = self.stretches[top]
+        reach = grid.at((part.low + part.high) / 2) / 2
+        widest = max(
+            [top, *self._beside(top, reach)],
+            key=lambda index: self.stretches[index].high - self.stretches[index].low,
+        )
+        width = self.stretches[widest].high - self.stretches[widest].low
+        return None if width < max(reach / FINEST, 1e-6 * part.high) else widest
+
+    def largest_energy(
+        self, grid: Spacing, rule: Rule, slopes: SlopeErrors, rounding: Rounding
+    ) -> tuple[float, float]:
+        """Return the largest energy error of intervals on one piece each, and where it lies."""
 
         def added(part: Stretch, h: float) -> float:
             rounded = _energy_rounding(part.largest, part, h, rounding, rule)
             return SLOPE_IN_ENERGY * h * slopes.about(part.low, part.high) + rounded
 
-        return self._size(grid, rule, rule.energy, added)
+        return self._largest(grid, rule, rule.energy, added)
 
-    def force_size(self, grid: Spacing, rule: Rule, slopes: SlopeErrors, rounding: Rounding) -> Size:
-        """Return the size of the force error on the intervals whose middle lies in a stretch."""
+    def largest_force(
+        self, grid: Spacing, rule: Rule, slopes: SlopeErrors, rounding: Rounding
+    ) -> tuple[float, float]:
+        """Return the largest force error of intervals on one piece each, and where it lies."""
 
         def added(part: Stretch, h: float) -> float:
             rounded = _force_rounding(part.largest, part, h, rounding, rule)
             return SLOPE_IN_FORCE * slopes.about(part.low, part.high) + rounded
 
-        return self._size(grid, rule, rule.force, added)
+        return self._largest(grid, rule, rule.force, added)
 
-    def _size(self, grid: Spacing, rule: Rule, term: Term, added: Callable[[Stretch, float], float]) -> Size:
-        which = 0 if term is rule.energy else 1
-        directly: dict[int, float] = {}
+    def _largest(
+        self, grid: Spacing, rule: Rule, term: Term, added: Callable[[Stretch, float], float]
+    ) -> tuple[float, float]:
+        """Return the largest of a term and what is added to it, over the intervals centred in each stretch."""
 
         def size(index: int) -> tuple[float, float]:
             part = self.stretches[index]
-            first, last = grid.centred(part.low, part.high)
-            if not (h := grid.longest_of(first, last)):
+            if not (h := grid.longest_of(*grid.centred(part.low, part.high))):
                 return 0.0, 0.0
-            bound, beside = self._term_size(term, index, h), added(part, h)
-            if first == last and h > COARSE * part.low and (first in directly or len(directly) < MOST_DIRECT):
-                if first not in directly:
-                    interval = grid.row(first), grid.row(first + 1)
-                    directly[first] = interval_bound(self.curve, *interval, rule)[which]
-                bound = min(bound, directly[first])
-            return bound + beside, min(self._reached(term, part, grid), bound) + beside
+            beside = added(part, h)
+            return self._term_size(term, index, h) + beside, self._reached(term, part, grid) + beside
 
-        return size
+        def directly(index: int) -> float:
+            part = self.stretches[index]
+            first, last = grid.centred(part.low, part.high)
+            h = grid.longest_of(first, last)
+            if first != last or h < COARSE * part.low:
+                return inf
+            errors = interval_bound(self.curve, grid.row(first), grid.row(first + 1), rule)
+            return errors[0 if term is rule.energy else 1] + added(part, h)
+
+        return self.cut_until_sharp(grid, size, directly)
 
     def drift_size(self, grid: Spacing, term: Term) -> Size:
         """Return the size of the distance between the force read and the slope of the energy read."""

@@ -9,11 +9,13 @@ from __future__ import annotations
 
 from collections.abc import Iterator
 from dataclasses import dataclass
+from functools import lru_cache
 from math import factorial, inf
 
 from ..formula.balls import Ball, ball, enclose, series, stretch
 from ..formula.bind import simplify
 from ..formula.branches import Piece
+from ..formula.programs import Same
 from ..formula.tree import Tree
 from ..potential import Curve
 from .direct import direct_bound
@@ -77,7 +79,13 @@ def _bound_at(before: Piece, after: Piece, grid: Spacing, rule: Rule) -> EdgeBou
 
 
 def _difference(base: Piece, other: Piece) -> Tree:
-    return simplify("+", (other.tree, simplify("negate", (base.tree,))))
+    return _gap(Same(other.tree), Same(base.tree))
+
+
+@lru_cache(maxsize=256)
+def _gap(one: Same, other: Same) -> Tree:
+    """Return the difference of two trees, the same one each time, so that it is made a program of once."""
+    return simplify("+", (one.tree, simplify("negate", (other.tree,))))
 
 
 def _row_mismatch(

@@ -37,18 +37,22 @@ def rows_needed(
         None if no table of up to ten million rows keeps them.
     """
 
-    def excess(rows: int) -> float:
+    def excess(rows: int, edges: bool) -> float:
         worst = 0.0
         if energy is not None:
-            worst = bounds.energy_bound(rows, spacing, interpolation, ends) / energy
+            worst = bounds.energy_bound(rows, spacing, interpolation, ends, edges=edges) / energy
         if force is not None and worst <= 1:
             worst = max(worst, bounds.bound(rows, spacing, interpolation, ends).force / force)
         return worst
 
     rule = RULES[interpolation]
-    return smallest(
-        excess, FEWEST_ROWS[interpolation], rule.energy.power if force is None else rule.force.power
-    )
+    power = rule.energy.power if force is None else rule.force.power
+    fewest = FEWEST_ROWS[interpolation]
+    # Edges between pieces seldom decide: look at them only for the count that the pieces themselves need.
+    enough = smallest(lambda rows: excess(rows, False), fewest, power)
+    if enough is None or excess(enough, True) <= 1:
+        return enough
+    return smallest(lambda rows: excess(rows, True), enough, power)
 
 
 def smallest(excess: Callable[[int], float], fewest: int, power: int) -> int | None:

@@ -2,7 +2,7 @@
 
 from __future__ import annotations
 
-from dataclasses import dataclass
+from dataclasses import dataclass, field
 from math import exp, floor, log, sqrt
 
 SLACK = 1e-12
@@ -17,11 +17,17 @@ class Spacing:
     end: float
     rows: int
     rule: str
+    first: float = field(init=False)
+    last: float = field(init=False)
+
+    def __post_init__(self) -> None:
+        """Work out once what the rows are even in at both ends."""
+        object.__setattr__(self, "first", self.even(self.start))
+        object.__setattr__(self, "last", self.even(self.end))
 
     def position(self, r: float) -> float:
         """Return the number of a separation, counted in row intervals from the first row."""
-        first, last = self.even(self.start), self.even(self.end)
-        return (self.even(r) - first) / (last - first) * (self.rows - 1)
+        return (self.even(r) - self.first) / (self.last - self.first) * (self.rows - 1)
 
     def even(self, r: float) -> float:
         """Return what the rows are even in."""
@@ -38,8 +44,7 @@ class Spacing:
     def row(self, index: int) -> float:
         """Return the separation of a row, counted from 0."""
         share = min(max(index, 0), self.rows - 1) / (self.rows - 1)
-        first, last = self.even(self.start), self.even(self.end)
-        value = first + (last - first) * share
+        value = self.first + (self.last - self.first) * share
         match self.rule:
             case "separation":
                 return value
@@ -63,7 +68,7 @@ class Spacing:
         first, last = (floor(self.position(edge)) for edge in (low, high))
         first += self._middle(first) < low * (1 - SLACK)
         last -= self._middle(last) > high * (1 + SLACK)
-        return min(max(first, 0), self.rows - 2), min(max(last, 0), self.rows - 2)
+        return max(first, 0), min(last, self.rows - 2)
 
     def longest_of(self, first: int, last: int) -> float:
         """Return the length of the longest of some row intervals; 0 if there are none."""

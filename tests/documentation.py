@@ -152,17 +152,21 @@ def schema_tables() -> str:
     return "\n\n".join(parts)
 
 
-def shown(file: str) -> str:
-    """What the terminal shows of a check of a sample."""
+def shown(command: str) -> str:
+    """What the terminal shows of a command on a sample."""
     printed = io.StringIO()
     with contextlib.chdir(ROOT), contextlib.redirect_stdout(printed):
-        main(["check", file])
+        main(command.split())
     return f"```text\n{printed.getvalue()}```"
 
 
-FAULTY = ("samples/faulty/first-row-energy.toml", "samples/faulty/energy-plus-length.toml")
+SHOWN = (
+    "check samples/faulty/first-row-energy.toml",
+    "check samples/faulty/energy-plus-length.toml",
+    "plan samples/faulty/table-error.toml",
+)
 GENERATED: dict[str, dict[str, Callable[[], str]]] = {
-    "README.md": {"checks": checks} | {f"check {file}": partial(shown, file) for file in FAULTY},
+    "README.md": {"checks": checks} | {command: partial(shown, command) for command in SHOWN},
     "DEVELOPERS.md": {"layers": layers},
     "schemas/README.md": {"fields": schema_tables},
 }

@@ -119,7 +119,9 @@ def _tabulate(options: argparse.Namespace) -> int:
     for name in ("workers", "scheduler"):
         if getattr(options, name):
             raise UnusableInput([Problem(f"--{name}", "This is for sets.", "Add --parameters SETS.")])
-    done = tabulate(options.document, into=options.into, accept=options.accept, track=_track)
+    done = tabulate(
+        options.document, into=options.into, accept=options.accept, strict=options.strict, track=_track
+    )
     _print_report(done.report, as_json=False)
     console = _console()
     console.print()
@@ -345,9 +347,14 @@ def _status(report: Report, *, strict: bool, accepted: bool = False) -> int:
 
 def _refuse(error: UnusableInput) -> int:
     from .reports.report import unusable
-    from .reports.terminal import print_problems
+    from .reports.terminal import print_problem, print_problems
 
-    print_problems(unusable(error, error.file or "slopewell"), _console(to_error=True))
+    console = _console(to_error=True)
+    if error.file:
+        print_problems(unusable(error, error.file), console)
+    else:
+        for problem in error.problems:
+            print_problem(problem, console)
     return UNUSABLE
 
 

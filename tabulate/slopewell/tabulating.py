@@ -6,7 +6,7 @@ from collections.abc import Iterable
 from dataclasses import dataclass, replace
 from pathlib import Path
 
-from .checks import ERROR, POTENTIAL_CHECKS, Finding, PotentialFacts
+from .checks import ERROR, WARNING, POTENTIAL_CHECKS, Finding, PotentialFacts
 from .checks.printed_digits import look as printed_digits
 from .document import read_document
 from .outputs import Target, certified_rows, rounding, targets, unit_systems, write_target
@@ -30,6 +30,7 @@ def tabulate(
     *,
     into: str | Path | None = None,
     accept: Iterable[str] = (),
+    strict: bool = False,
     track: Track = silently,
 ) -> Tabulated:
     """Check a document, then write every output that it names.
@@ -42,6 +43,8 @@ def tabulate(
         Folder of the files; beside the document by default.
     accept : iterable of str
         Checks whose errors do not stop the writing; the acceptance is recorded in the files.
+    strict : bool
+        Let a warning stop the writing as an error does.
     track : callable, optional
         Shows progress.
 
@@ -54,7 +57,8 @@ def tabulate(
     document = read_document(path)
     found = targets(document, Path(path).parent if into is None else Path(into))
     subject, facts = check_document(document, track=track)
-    errors = {finding.check for finding in subject.findings if finding.level == ERROR}
+    stopping = {ERROR, WARNING} if strict else {ERROR}
+    errors = {finding.check for finding in subject.findings if finding.level in stopping}
     subject = replace(subject, accepted=tuple(name for name in accepted if name in errors))
     if errors - set(accepted):
         return Tabulated(Report((subject,)), ())

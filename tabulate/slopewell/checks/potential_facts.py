@@ -8,8 +8,8 @@ from functools import cached_property
 import numpy as np
 from numpy.typing import NDArray
 
-from ..formula.balls import ball, series
 from ..document import Document, Expectation, Grid, Interaction
+from ..formula.balls import ball, series
 from ..potential import Landmarks, Potential, find_landmarks
 from ..table.bounds import ErrorBounds
 from ..table.certificate import Certificate
@@ -94,8 +94,8 @@ class PotentialFacts:
         return bool(series(tree, ball(self.potential.start), 1)[1] < 0)
 
     def length(self, angstrom: float) -> float:
-        """Return a length in the document's unit."""
-        return angstrom / float(self.units.length.factor)
+        """Return a length in the document's unit, without the last digit that conversion spoils."""
+        return float(f"{angstrom / float(self.units.length.factor):.15g}")
 
     def energy(self, electron_volt: float, per_length: int = 0) -> float:
         """Return an energy, or an energy per length to a power, in the document's units."""

@@ -29,7 +29,7 @@ def look(facts: PotentialFacts) -> Iterator[Finding]:
         unit, place = facts.units.per_length(power).text, facts.length(at)
         yield Finding(
             level=ERROR,
-            says=f"Reading {facts.rows} rows by {grid.interpolation} makes a {name} error of up to "
+            says=f"Reading {facts.rows} rows by {grid.interpolation} makes {ARTICLES[name]} {name} error of up to "
             f"{facts.energy(error, power):.3g} {unit} (proved), near {place:.4g} {facts.units.length.text}; "
             f"{facts.energy(float(tolerance), power):.3g} {unit} is allowed.",
             remedy=_remedy(facts),
@@ -39,6 +39,9 @@ def look(facts: PotentialFacts) -> Iterator[Finding]:
             limit=facts.energy(float(tolerance), power),
             unit=unit,
         )
+
+
+ARTICLES = {"energy": "an", "force": "a"}
 
 
 def _remedy(facts: PotentialFacts) -> str:

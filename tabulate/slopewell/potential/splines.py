@@ -111,11 +111,11 @@ def _cubic(x: Array, y: Array, points: Points) -> list[Array]:
 
 
 def _quintic(x: Array, y: Array, points: Points) -> list[Array]:
-    from scipy.interpolate import CubicSpline, make_interp_spline
+    from scipy.interpolate import make_interp_spline
 
     if points.slope:
         slope = np.array([float(slope) for slope in points.slope])
-        return [y, slope, CubicSpline(x, slope)(x, 1)]
+        return [y, slope, make_interp_spline(x, slope, k=5)(x, 1)]
     made = make_interp_spline(x, y, k=5)
     return [y, made(x, 1), made(x, 2)]
 

@@ -84,7 +84,15 @@ class PotentialFacts:
         first = self.treated.extrema[0] if self.treated.extrema else None
         repels = self.pushes_at_start and (first is None or first.minimum)
         return Certificate(
-            self.rows, grid.spacing, grid.interpolation, grid.ends, bound, self.treated, repels and self.treated.proved
+            rows=self.rows,
+            spacing=grid.spacing,
+            interpolation=grid.interpolation,
+            ends=grid.ends,
+            bound=bound,
+            landmarks=self.treated,
+            repulsive_to_first_row=repels and self.treated.proved,
+            tolerance=None if grid.tolerance is None else float(grid.tolerance),
+            force_tolerance=None if grid.force_tolerance is None else float(grid.force_tolerance),
         )
 
     @cached_property

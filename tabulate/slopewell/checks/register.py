@@ -36,7 +36,7 @@ POTENTIAL_CHECKS: tuple[Check[PotentialFacts], ...] = (
     single_well.CHECK,
     expected_landmarks.CHECK,
     first_row_energy.CHECK,
-    table_error.CHECK,
+    table_error.POTENTIAL_CHECK,
 )
 """Checks of a potential document."""
 
@@ -46,6 +46,7 @@ TABLE_CHECKS: tuple[Check[TableFacts], ...] = (
     rows_evenly_spaced.CHECK,
     force_matches_slope.TABLE_CHECK,
     enough_digits.CHECK,
+    table_error.TABLE_CHECK,
     last_row.CHECK,
     row_shape.CORE_CHECK,
     row_shape.WELL_CHECK,

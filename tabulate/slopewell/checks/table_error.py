@@ -7,6 +7,7 @@ from collections.abc import Iterator
 from ..table.rowcount import rows_needed
 from .findings import ERROR, NOTE, Check, Finding
 from .potential_facts import PotentialFacts
+from .table_facts import TableFacts
 
 
 def look(facts: PotentialFacts) -> Iterator[Finding]:
@@ -54,6 +55,31 @@ def _remedy(facts: PotentialFacts) -> str:
     return f"Use rows = {rows}, or leave rows out and let the tolerance choose; slopewell plan compares the rules."
 
 
-CHECK: Check[PotentialFacts] = Check(
+def look_at_table(facts: TableFacts) -> Iterator[Finding]:
+    """Hold the bounds of a table's certificate against the tolerances of the document it was made from."""
+    certificate = facts.rows.certificate
+    for name, unit in (("energy", facts.units.energy.text), ("force", facts.units.force.text)):
+        bound, tolerance = certificate.get(f"{name}_error_bound"), certificate.get(f"{name}_tolerance")
+        if bound is None or tolerance is None or bound <= tolerance:
+            continue
+        place = certificate[f"{name}_error_at"]
+        yield Finding(
+            level=ERROR,
+            says=f"By its certificate, reading the table makes {ARTICLES[name]} {name} error of up to {bound:.3g} {unit}, "
+            f"near {place:.4g} {facts.units.length.text}; its document allows {tolerance:.3g} {unit}.",
+            remedy="Tabulate its document anew with more rows; slopewell plan says how many.",
+            start=place,
+            end=place,
+            measured=bound,
+            limit=tolerance,
+            unit=unit,
+        )
+
+
+TABLE_CHECK: Check[TableFacts] = Check(
+    "table-error", "Reading between rows keeps the stated tolerance", look_at_table, requires=("rows-readable",)
+)
+
+POTENTIAL_CHECK: Check[PotentialFacts] = Check(
     "table-error", "Reading between rows keeps the stated tolerance", look, requires=("finite",)
 )

@@ -23,6 +23,8 @@ class Certificate:
     landmarks : Landmarks
     repulsive_to_first_row : bool
         Whether the curve is proved to repel at the first row and not to turn over inside the grid.
+    tolerance, force_tolerance : float or None
+        The largest errors that the document allows.
     """
 
     rows: int
@@ -32,6 +34,8 @@ class Certificate:
     bound: Bound
     landmarks: Landmarks
     repulsive_to_first_row: bool
+    tolerance: float | None = None
+    force_tolerance: float | None = None
 
     def record(self, units: UnitSystem) -> dict[str, Any]:
         """Return the certificate as plain values in the given units, without a bound that was not found."""
@@ -53,6 +57,10 @@ class Certificate:
                 "force_error_at": self.bound.force_at / length,
                 "drift_bound": self.bound.drift / force,
             }
+        if self.tolerance is not None:
+            record["energy_tolerance"] = self.tolerance / energy
+        if self.force_tolerance is not None:
+            record["force_tolerance"] = self.force_tolerance / force
         return record | {
             "stationary_points": self.landmarks.stationary_points,
             "stationary_points_proved": self.landmarks.proved,

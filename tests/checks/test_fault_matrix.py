@@ -6,11 +6,12 @@ import sys
 from collections import Counter
 from pathlib import Path
 
+import numpy as np
 import pytest
 
 sys.path.insert(0, str(Path(__file__).parent))
 
-from fault_matrix import FAULTS, cells, clean_cells, verdict
+from fault_matrix import CURVES, FAULTS, Clean, Sample, cells, clean, clean_cells, named, verdict
 
 GOAL = 0.98
 
@@ -31,3 +32,18 @@ def test_mistakes_are_named_first(name: str) -> None:
 
     # A sample this small may hold one cell in which nothing but luck would name it.
     assert right >= min(GOAL * sum(found.values()), sum(found.values()) - 1), found
+
+
+@pytest.mark.parametrize("curve", CURVES, ids=lambda curve: curve.name)
+@pytest.mark.parametrize("stored", ["four decimals", "single precision"])
+def test_no_alarm_on_clean_tables_stored_roughly(curve: Clean, stored: str) -> None:
+    plain = clean(curve, 1000, "eV,angstrom")
+    columns = (plain.separation, plain.energy, plain.force)
+    if stored == "four decimals":
+        rough = Sample(
+            *(np.round(column, decimals) for column, decimals in zip(columns, (6, 4, 4), strict=True))
+        )
+    else:
+        rough = Sample(*(column.astype(np.float32).astype(np.float64) for column in columns))
+
+    assert named(rough, "eV,angstrom")[0] == "none"

@@ -24,7 +24,11 @@ Reading = tuple[int, Array, Array, Array]
 HIGHEST = 6
 """Highest order of divided differences: seven rows."""
 SAFETY = 3.0
-"""Band per movement of the slope between the last two orders."""
+"""Band per movement of the slope by the last two orders."""
+HIDDEN = 2.5
+"""Multiple of the rounding charged to a wider stride: rounding hides whether it still converges."""
+WIDEST = 0.1
+"""Part of the separation that a wider stride may span: curves of pairs change over less than that."""
 CONVERGENCE = 0.3
 """Movement of the last two orders per that of the two before, beyond which nothing converges."""
 STRIDE_RATIO = 3
@@ -133,7 +137,7 @@ class _Strided:
         product: Array | float = 1.0
         # One-sided rows further apart than the origin is away tell nothing of a curve that diverges there.
         gap = np.abs(self.r[first + nodes[0] * s : first + nodes[0] * s + count] - here)
-        reach = np.abs(here) if min(nodes) > 0 else np.inf
+        reach = np.abs(here) * (WIDEST if s > 1 else 1.0) if s > 1 or min(nodes) > 0 else np.inf
         value = np.zeros(count)
         moved: list[Array] = []
         for order, node in enumerate(nodes, start=1):
@@ -147,7 +151,8 @@ class _Strided:
                 rounding = self._rounding(first, count, nodes, weights[order], order)
                 change, before = moved[-1] + moved[-2], moved[-3] + moved[-4]
                 lost = ((change > CONVERGENCE * before) & (change > rounding)) | (gap > reach)
-                yield first, value, np.where(lost, np.inf, SAFETY * widest(change, s) + rounding), rounding
+                charged = rounding if s == 1 else HIDDEN * rounding
+                yield first, value, np.where(lost, np.inf, SAFETY * widest(change, s) + charged), rounding
 
     def _rounding(
         self, first: int, count: int, nodes: tuple[int, ...], weights: tuple[int, ...], order: int

@@ -25,6 +25,8 @@ TERMS = 8.0
 """Units in the last place of the largest term that a clean number may be off by."""
 NEGLIGIBLE = 3e-8
 """Part of the largest term of a force below which a difference is no mistake that anybody makes."""
+TINY = 1e-9
+"""Part of the usual force below which a force is as good as none."""
 ROOM_TEMPERATURE = 300
 """In kelvin: the energy scale of a table without a well."""
 
@@ -168,7 +170,8 @@ def _slopes(separation: Array, energy: Array, rounding: Mapping[str, Array]) -> 
         largest = np.abs(energy) + steep * separation + bend * separation**2
         noise = rounding["energy"] if "energy" in rounding else np.zeros_like(energy)
         found = slopes(separation, energy, noise + TERMS * EPSILON * largest, own)
-        band = found.band + bend * own + NEGLIGIBLE * (steep + bend * separation)
+        usual = np.median(steep[steep > 0]) if steep.any() else 0.0
+        band = found.band + bend * own + NEGLIGIBLE * (steep + bend * separation) + TINY * usual
     return Slopes(found.values, np.where(np.isfinite(band), band, np.inf))
 
 

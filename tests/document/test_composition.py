@@ -86,7 +86,8 @@ def test_charges_add_their_coulomb_energy(tmp_path: Path) -> None:
 
 def test_a_common_cutoff_holds_where_there_is_no_other(tmp_path: Path) -> None:
     common = '[cutoff]\nat = 8\ntreatment = "shifted-stiffness"\n'
-    pairs = f'{LENNARD_JONES}[[interaction]]\nbetween = ["A", "B"]\n{LENNARD_JONES}cutoff = {{ at = 6, treatment = "truncate" }}\n'
+    own = LENNARD_JONES + 'cutoff = { at = 6, treatment = "truncate" }\n'
+    pairs = f'{LENNARD_JONES}[[interaction]]\nbetween = ["A", "B"]\n{own}'
     found = read(text(pairs, cutoff="", outputs=common), tmp_path).interactions
     cutoffs = [(float(one.potential.cutoff.at), one.potential.cutoff.treatment) for one in found]
     assert cutoffs == [(8, "shifted-stiffness"), (6, "truncate")]
@@ -96,23 +97,49 @@ PLACE = "interaction[0].segment"
 MISTAKES = {
     "no-join": (segments("X").replace("join = X\n", ""), f"{PLACE}[1]", "does not say how it joins"),
     "join-of-the-first": (
-        segments('{ method = "meet", at = 1 }').replace('form = "zbl"', 'join = { method = "meet", at = 1 }\nform = "zbl"'),
+        segments('{ method = "meet", at = 1 }').replace(
+            'form = "zbl"', 'join = { method = "meet", at = 1 }\nform = "zbl"'
+        ),
         f"{PLACE}[0].join",
         "none before it",
     ),
-    "bridge-without-end": (segments('{ method = "blend", from = 1 }'), f"{PLACE}[1].join.to", 'the key "to" is missing'),
-    "meet-with-range": (segments('{ method = "meet", at = 1, to = 2 }'), f"{PLACE}[1].join.to", "without meaning"),
-    "bridge-backwards": (segments('{ method = "blend", from = 2, to = 1 }'), f"{PLACE}[1].join.to", "ends before it starts"),
+    "bridge-without-end": (
+        segments('{ method = "blend", from = 1 }'),
+        f"{PLACE}[1].join.to",
+        'the key "to" is missing',
+    ),
+    "meet-with-range": (
+        segments('{ method = "meet", at = 1, to = 2 }'),
+        f"{PLACE}[1].join.to",
+        "without meaning",
+    ),
+    "bridge-backwards": (
+        segments('{ method = "blend", from = 2, to = 1 }'),
+        f"{PLACE}[1].join.to",
+        "ends before it starts",
+    ),
     "bridge-off-the-grid": (segments('{ method = "blend", from = 0.1, to = 1 }'), PLACE, "must ascend"),
     "exponential-to-attraction": (
         segments('{ method = "exp-polynomial", from = 1, to = 3 }'),
         PLACE,
         "an exponential can't bridge to an energy that is not positive",
     ),
-    "join-in-energy": (segments('{ method = "meet", at = "1 eV" }'), f"{PLACE}[1].join.at", "length is expected"),
+    "join-in-energy": (
+        segments('{ method = "meet", at = "1 eV" }'),
+        f"{PLACE}[1].join.at",
+        "length is expected",
+    ),
     "force-of-a-sum": ('force = "1/r"\n' + TERMS, "interaction[0].force", 'has no meaning beside "term"'),
-    "term-with-a-mistake": (TERMS.replace("born", "bron"), "interaction[0].term[0].form", 'no form "bron-mayer"'),
-    "charge-unknown": ("charges = true\n" + LENNARD_JONES, "interaction[0].charges", 'The species "A" has no charge.'),
+    "term-with-a-mistake": (
+        TERMS.replace("born", "bron"),
+        "interaction[0].term[0].form",
+        'no form "bron-mayer"',
+    ),
+    "charge-unknown": (
+        "charges = true\n" + LENNARD_JONES,
+        "interaction[0].charges",
+        'The species "A" has no charge.',
+    ),
 }
 
 

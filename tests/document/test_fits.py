@@ -9,8 +9,8 @@ import pytest
 from documents import problems, read, text
 from slopewell.document import Interaction
 
-# HCl: P. M. Morse's form (Phys. Rev. 34, 57 (1929)) with D = 37242 cm^-1 and a = 1.8677 per angstrom, as in the
-# entry T04-015 of tests/references/diatomics.json; r0 = 1.2746 angstrom from memory.
+# HCl: P. M. Morse's form (Phys. Rev. 34, 57 (1929)) with D = 37242 cm^-1 and a = 1.8677 per angstrom, as in
+# the entry T04-015 of tests/references/diatomics.json; r0 = 1.2746 angstrom from memory.
 DEPTH, RANGE, PLACE = 37242.0, 1.8677, 1.2746
 UNITS = '[units]\nenergy = "cm^-1"\nlength = "angstrom"\n[species.A]\n'
 GRID = "[grid]\nfrom = 0.8\nto = 6\nrows = 101\n"
@@ -24,11 +24,13 @@ def morse(r: np.ndarray) -> np.ndarray:
 def scan(folder: Path, noise: float = 50.0, seed: int = 1, weight: np.ndarray | None = None) -> None:
     energy = morse(R) + noise * np.random.default_rng(seed).standard_normal(R.size)
     third = np.full(R.size, max(noise, 1.0)) if weight is None else weight
-    rows = (f"{r:.6f} {u:.6f} {w:.6f}" for r, u, w in zip(R, energy, third, strict=True))
+    rows = (f"{r:.15g} {u:.15g} {w:.6f}" for r, u, w in zip(R, energy, third, strict=True))
     (folder / "scan.dat").write_text("\n".join(rows), encoding="utf-8")
 
 
-def fitted(folder: Path, fit: str = "", form: str = 'form = "morse"', parameters: str = '"D", "a", "r0"') -> Interaction:
+def fitted(
+    folder: Path, fit: str = "", form: str = 'form = "morse"', parameters: str = '"D", "a", "r0"'
+) -> Interaction:
     return read(document(fit, form, parameters), folder).interactions[0]
 
 
@@ -43,7 +45,9 @@ COLUMN = ', weight = "column"'
 
 
 @pytest.mark.parametrize("seed", range(4))
-def test_a_scan_of_a_published_morse_curve_is_fitted_back_within_its_errors(seed: int, tmp_path: Path) -> None:
+def test_a_scan_of_a_published_morse_curve_is_fitted_back_within_its_errors(
+    seed: int, tmp_path: Path
+) -> None:
     scan(tmp_path, seed=seed)
     (fit,) = fitted(tmp_path, COLUMN).fits
     off = [(p.value - true) / p.error for p, true in zip(fit.parameters, (DEPTH, RANGE, PLACE), strict=True)]
@@ -58,12 +62,15 @@ def test_without_noise_the_parameters_come_back_exactly(tmp_path: Path) -> None:
     scan(tmp_path, noise=0.0)
     found = fitted(tmp_path)
     assert [p.value for p in found.fits[0].parameters] == pytest.approx([DEPTH, RANGE, PLACE], rel=1e-8)
-    assert found.potential.bare.derivatives(R, 0)[0] * 8065.543937 == pytest.approx(morse(R), rel=1e-5, abs=0.01)
+    assert found.potential.bare.derivatives(R, 0)[0] * 8065.543937 == pytest.approx(
+        morse(R), rel=1e-5, abs=0.01
+    )
 
 
 def test_a_formula_of_ones_own_is_fitted_in_the_units_of_its_starts(tmp_path: Path) -> None:
     scan(tmp_path, noise=0.0)
-    form = 'energy = "D*((1 - exp(-a*(r - s)))^2 - 1)"\nparameters = { D = "5 eV", a = "20 nm^-1", s = "1.2746 angstrom" }'
+    starts = 'parameters = { D = "5 eV", a = "20 nm^-1", s = "1.2746 angstrom" }'
+    form = f'energy = "D*((1 - exp(-a*(r - s)))^2 - 1)"\n{starts}'
     first, second = fitted(tmp_path, form=form, parameters='"D", "a"').fits[0].parameters
     assert (first.unit, second.unit) == ("eV", "nm^-1")
     assert (first.value, second.value) == pytest.approx((DEPTH / 8065.543937, 10 * RANGE), rel=1e-7)
@@ -98,13 +105,25 @@ def test_uniform_errors_come_from_the_scatter(tmp_path: Path) -> None:
     assert even.reduced_chi_squared is None
 
 
+MORSE = 'form = "morse"\nparameters = { a = 1.9, r0 = 1.3 }'
 MISTAKES = {
-    "unknown-parameter": (document(parameters='"D", "b"'), "fit.parameters[1]", 'The parameter "b" has no value to start from.'),
-    "twice": (document(parameters='"D", "D"'), "fit.parameters[1]", '"D" is listed twice.'),
-    "no-temperature": (document(', weight = "boltzmann"'), "fit.weight", "Boltzmann weights need a temperature."),
+    "unknown-parameter": (
+        document(form=MORSE, parameters='"D", "b"'),
+        "fit.parameters[1]",
+        'The parameter "b" has no value to start from.',
+    ),
+    "twice": (document(form=MORSE, parameters='"D", "D"'), "fit.parameters[1]", '"D" is listed twice.'),
+    "no-temperature": (
+        document(', weight = "boltzmann"'),
+        "fit.weight",
+        "Boltzmann weights need a temperature.",
+    ),
     "no-file": (document().replace("scan.dat", "scam.dat"), "fit.to", "can't be read"),
     "not-determined": (
-        document(form='energy = "a*b*e*exp(-r/s)"\nparameters = { a = 1, b = 1, e = "1 eV", s = "1 angstrom" }', parameters='"a", "b"'),
+        document(
+            form='energy = "a*b*e*exp(-r/s)"\nparameters = { a = 1, b = 1, e = "1 eV", s = "1 angstrom" }',
+            parameters='"a", "b"',
+        ),
         "fit",
         "the points do not determine all of the parameters",
     ),

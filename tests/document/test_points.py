@@ -14,7 +14,9 @@ U = 0.04 * ((3.4 / R) ** 12 - (3.4 / R) ** 6)
 SLOPE = 0.04 * (-12 * 3.4**12 / R**13 + 6 * 3.4**6 / R**7)
 
 
-def write(folder: Path, *columns: np.ndarray, head: str = "separation,energy\n", separator: str = ",") -> None:
+def write(
+    folder: Path, *columns: np.ndarray, head: str = "separation,energy\n", separator: str = ","
+) -> None:
     rows = (separator.join(f"{value:.12g}" for value in row) for row in zip(*columns, strict=True))
     (folder / "scan.csv").write_text(head + "\n".join(rows) + "\n", encoding="utf-8")
 
@@ -54,7 +56,8 @@ def test_points_may_descend(tmp_path: Path) -> None:
 
 def test_points_may_be_a_term(tmp_path: Path) -> None:
     write(tmp_path, R, U)
-    terms = '[[interaction.term]]\npoints = "scan.csv"\n[[interaction.term]]\nenergy = "e"\nparameters = { e = "2 eV" }\n'
+    other = '[[interaction.term]]\nenergy = "e"\nparameters = { e = "2 eV" }\n'
+    terms = f'[[interaction.term]]\npoints = "scan.csv"\n{other}'
     (found,) = read(text(terms, cutoff=""), tmp_path).interactions
     assert found.potential.bare.derivatives(R, 0)[0] == pytest.approx(U + 2, rel=1e-10)
     assert len(found.potential.splines) == 1
@@ -74,7 +77,11 @@ MISTAKES = {
     "twice": ("1 2\n3 4\n3 5\n6 7\n8 9\n", "", "Two points have one separation."),
     "negative": ("-1 2\n3 4\n5 5\n6 7\n8 9\n", "", "A separation is not positive."),
     "error-of-zero": ("1 2 0\n3 4 1\n4 5 1\n6 7 1\n8 9 1\n", ERRORS, "A standard error is not positive."),
-    "smoothing-without-errors": ("1 2\n3 4\n4 5\n6 7\n8 9\n", 'spline = "smoothing"\n', "needs the standard errors"),
+    "smoothing-without-errors": (
+        "1 2\n3 4\n4 5\n6 7\n8 9\n",
+        'spline = "smoothing"\n',
+        "needs the standard errors",
+    ),
     "monotone-with-slopes": (
         "1 2 0\n3 4 1\n4 5 1\n6 7 1\n8 9 1\n",
         'spline = "monotone"\ncolumns = ["separation", "energy", "slope"]\n',

@@ -18,15 +18,21 @@ values = st.recursive(
     | st.booleans()
     | st.decimals(allow_nan=False, allow_infinity=False, places=6, min_value=-(10**9), max_value=10**9)
     | st.sampled_from([Decimal("1E-30"), Decimal("2.5E+40"), Decimal(7)]),
-    lambda inner: st.lists(inner, max_size=3)
-    | st.dictionaries(st.text(st.characters(exclude_categories=["Cs"]), max_size=6), inner, max_size=3),
+    lambda inner: (
+        st.lists(inner, max_size=3)
+        | st.dictionaries(st.text(st.characters(exclude_categories=["Cs"]), max_size=6), inner, max_size=3)
+    ),
     max_leaves=12,
 )
 
 
 def same(one: Any, other: Any) -> bool:
     if isinstance(one, dict):
-        return isinstance(other, dict) and one.keys() == other.keys() and all(same(one[k], other[k]) for k in one)
+        return (
+            isinstance(other, dict)
+            and one.keys() == other.keys()
+            and all(same(one[k], other[k]) for k in one)
+        )
     if isinstance(one, list):
         return isinstance(other, list) and len(one) == len(other) and all(map(same, one, other))
     return bool(one == other) and type(one) is type(other)

@@ -12,15 +12,19 @@ from slopewell.formula.balls import ball, series
 from slopewell.potential import Curve
 from slopewell.potential.joins import Join, JoinError, join_segments
 
-# Iron: M. I. Mendelev, S. Han, D. J. Srolovitz, G. J. Ackland, D. Y. Sun and M. Asta, Philos. Mag. 83, 3977 (2003);
-# coefficients from memory. That energy and slope meet at both ends of the bridge to nine digits confirms them.
+# Iron: M. I. Mendelev, S. Han, D. J. Srolovitz, G. J. Ackland, D. Y. Sun and M. Asta, Philos. Mag. 83, 3977
+# (2003); coefficients from memory. That energy and slope meet at both ends of the bridge confirms them.
 NUCLEI = """9734.2365892908/r*(0.18180*exp(-28.616724320005*r) + 0.50990*exp(-8.4267310396064*r)
  + 0.28020*exp(-3.6030244464156*r) + 0.028170*exp(-1.8028536321603*r))"""
 BRIDGE = (7.4122709384068, -0.64180690713367, -2.6043547961722, 0.6262539393123)
-FITTED = """-27.444805994228*max(2.2 - r, 0)^3 + 15.738054058489*max(2.3 - r, 0)^3 + 2.2077118733936*max(2.4 - r, 0)^3
+FITTED = """-27.444805994228*max(2.2 - r, 0)^3
+ + 15.738054058489*max(2.3 - r, 0)^3 + 2.2077118733936*max(2.4 - r, 0)^3
  - 2.4989799053251*max(2.5 - r, 0)^3 + 4.2099676494795*max(2.6 - r, 0)^3 - 0.77361294129713*max(2.7 - r, 0)^3
- + 0.80656414937789*max(2.8 - r, 0)^3 - 2.3194358924605*max(3.0 - r, 0)^3 + 2.6577406128280*max(3.3 - r, 0)^3
- - 1.0260416933564*max(3.7 - r, 0)^3 + 0.35018615891957*max(4.2 - r, 0)^3 - 0.058531821042271*max(4.7 - r, 0)^3
+ + 0.80656414937789*max(2.8 - r, 0)^3
+ - 2.3194358924605*max(3.0 - r, 0)^3 + 2.6577406128280*max(3.3 - r, 0)^3
+
+ - 1.0260416933564*max(3.7 - r, 0)^3
+ + 0.35018615891957*max(4.2 - r, 0)^3 - 0.058531821042271*max(4.7 - r, 0)^3
  - 0.0030458824556234*max(5.3 - r, 0)^3"""
 START, END = Fraction(1), Fraction(41, 20)
 
@@ -49,7 +53,11 @@ def test_the_exponential_of_a_cubic_is_the_published_bridge() -> None:
 
 def test_the_published_pieces_meet_in_energy_and_slope_but_not_in_curvature() -> None:
     middle = f"exp({BRIDGE[0]} + ({BRIDGE[1]})*r + ({BRIDGE[2]})*r^2 + {BRIDGE[3]}*r^3)"
-    parts = [curve(NUCLEI, Fraction(1, 2), START), curve(middle, START, END), curve(FITTED, END, Fraction(53, 10))]
+    parts = [
+        curve(NUCLEI, Fraction(1, 2), START),
+        curve(middle, START, END),
+        curve(FITTED, END, Fraction(53, 10)),
+    ]
     whole = join_segments(parts, [Join("meet", START, START), Join("meet", END, END)])
     for at in (START, END):
         energy, slope, half_curvature = jumps(whole, at, 2)
@@ -60,7 +68,13 @@ def test_the_published_pieces_meet_in_energy_and_slope_but_not_in_curvature() ->
 
 @pytest.mark.parametrize(
     ("method", "degree", "orders"),
-    [("polynomial", 3, 2), ("polynomial", 5, 3), ("polynomial", 7, 4), ("exp-polynomial", 3, 2), ("exp-polynomial", 5, 3)],
+    [
+        ("polynomial", 3, 2),
+        ("polynomial", 5, 3),
+        ("polynomial", 7, 4),
+        ("exp-polynomial", 3, 2),
+        ("exp-polynomial", 5, 3),
+    ],
 )
 def test_a_bridge_matches_so_many_derivatives_at_both_ends(method: str, degree: int, orders: int) -> None:
     whole = joined(method, degree)
@@ -99,4 +113,7 @@ def test_an_exponential_does_not_bridge_to_an_attraction() -> None:
 
 def test_a_bridge_needs_finite_ends() -> None:
     with pytest.raises(JoinError, match="no finite value"):
-        join_segments([SHORT, curve("log(r - 1)", Fraction(1, 2), 3)], [Join("polynomial", Fraction(3, 5), Fraction(9, 10))])
+        join_segments(
+            [SHORT, curve("log(r - 1)", Fraction(1, 2), 3)],
+            [Join("polynomial", Fraction(3, 5), Fraction(9, 10))],
+        )

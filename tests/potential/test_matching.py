@@ -24,7 +24,10 @@ def test_it_has_the_coefficients_asked_for_at_both_ends(
     tree = matching(left, right, start, start + width)
     for at, wanted in ((start, left), (start + width, right)):
         found = series(tree, ball(at), len(wanted) - 1)
-        assert all(c.contains(ball(w)) or abs(float((c - ball(w)).mid())) < 1e-25 for c, w in zip(found, wanted, strict=True))
+        assert all(
+            c.contains(ball(w)) or abs(float((c - ball(w)).mid())) < 1e-25
+            for c, w in zip(found, wanted, strict=True)
+        )
 
 
 def test_two_energies_and_slopes_give_the_textbook_cubic() -> None:

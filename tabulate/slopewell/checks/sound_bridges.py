@@ -18,6 +18,8 @@ from .potential_facts import PotentialFacts
 Array = NDArray[np.float64]
 SAMPLES = 401
 """Separations at which a bridge is held against the curves that it joins."""
+ROUNDING = 1e-12
+"""Part of the energy from which on a distance from both curves counts."""
 
 
 class Crossing:
@@ -66,7 +68,7 @@ class Crossing:
             for curve in (self.curve, self.built.before, self.built.after)
         )
         out = np.maximum(between - np.fmax(before, after), np.fmin(before, after) - between)
-        out = np.where(np.isfinite(out), out, 0.0)
+        out = np.where(np.isfinite(out) & (out > ROUNDING * np.abs(between)), out, 0.0)
         most = int(np.argmax(out))
         return float(self.samples[most]), max(float(out[most]), 0.0)
 

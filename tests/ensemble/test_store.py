@@ -43,17 +43,24 @@ def test_a_set_that_did_not_settle_is_never_finished(tmp_path: Path) -> None:
     assert not store.finished("one", JOB.content(chosen("1")))
 
 
-def test_what_a_kill_leaves_is_swept_away(tmp_path: Path, monkeypatch: pytest.MonkeyPatch) -> None:
-    def killed(*_: object) -> None:
+def test_an_interrupt_leaves_nothing_half_written(tmp_path: Path, monkeypatch: pytest.MonkeyPatch) -> None:
+    def interrupted(*_: object) -> None:
         raise KeyboardInterrupt
 
-    with monkeypatch.context() as during:
-        during.setattr(os, "replace", killed)
-        with pytest.raises(KeyboardInterrupt):
-            Store(tmp_path).put(made("1", table=b"rows"))
-    assert list(tmp_path.iterdir()) == [tmp_path / ".new-one.part"]
-    Store(tmp_path).sweep()
+    monkeypatch.setattr(os, "replace", interrupted)
+    with pytest.raises(KeyboardInterrupt):
+        Store(tmp_path).put(made("1", table=b"rows"))
     assert list(tmp_path.iterdir()) == []
+
+
+def test_what_a_kill_leaves_is_swept_away(tmp_path: Path) -> None:
+    store = Store(tmp_path)
+    store.put(made("1", table=b"rows"))
+    for left in (".new-two.part", ".old-one.part"):
+        (tmp_path / left).mkdir()
+        (tmp_path / left / "table").write_bytes(b"ro")
+    store.sweep()
+    assert [path.name for path in tmp_path.iterdir()] == ["one"]
 
 
 def test_a_place_that_cannot_be_written_is_said(tmp_path: Path) -> None:

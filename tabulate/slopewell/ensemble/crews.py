@@ -56,7 +56,8 @@ def _until_broken(job: Job, left: Iterator[ParameterSet], workers: int) -> Any:
         while True:
             for chosen in islice(left, 0 if lost else workers * AHEAD - len(waiting)):
                 try:
-                    waiting[pool.submit(run_set, job, chosen)] = chosen
+                    with _deaf():
+                        waiting[pool.submit(run_set, job, chosen)] = chosen
                 except BrokenProcessPool:
                     lost.append(chosen)
                     break
@@ -81,6 +82,19 @@ def _pool(workers: int) -> Iterator[ProcessPoolExecutor]:
         yield pool
     finally:
         pool.shutdown(wait=True, cancel_futures=True)
+
+
+@contextlib.contextmanager
+def _deaf() -> Iterator[None]:
+    """Keep processes that are started meanwhile from hearing a Ctrl-C, even before their first line."""
+    if not hasattr(signal, "pthread_sigmask"):
+        yield
+        return
+    before = signal.pthread_sigmask(signal.SIG_BLOCK, {signal.SIGINT})
+    try:
+        yield
+    finally:
+        signal.pthread_sigmask(signal.SIG_SETMASK, before)
 
 
 def _settle() -> None:

@@ -61,11 +61,13 @@ class Store:
             if final.exists():
                 os.replace(final, old)
             os.replace(part, final)
-            shutil.rmtree(old, ignore_errors=True)
         except OSError as error:
             says = f"{final} can't be written: {error.strerror or error}."
             remedy = "Check the folder and the space left; sets that are done stay done."
             raise UnusableInput([Problem("", says, remedy)], str(final)) from None
+        finally:
+            shutil.rmtree(part, ignore_errors=True)
+            shutil.rmtree(old, ignore_errors=True)
 
 
 NAMES = (("", ""), (".new-", PART), (".old-", PART))

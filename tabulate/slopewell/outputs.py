@@ -19,6 +19,7 @@ from .files import Layout, format_of, layout, read_layout
 from .problems import Problem, UnusableInput
 from .table import Rows, Table, tabulate_rows
 from .table.proof import last_places_off, rows_to_prove
+from .table.rounding import Rounding
 from .units import UnitSystem
 from .units.constants import CODATA
 
@@ -156,6 +157,22 @@ def _same(written: Array, found: Array, chosen: Layout | None, name: str) -> boo
     if name not in formats:
         relative = max(relative, 1e-2)
     return bool(np.all(np.abs(found - written) <= relative * np.abs(written) + absolute))
+
+
+def printed(chosen: Layout, units: UnitSystem) -> Rounding:
+    """Return the rounding of the digits that a layout prints, in eV and ångström."""
+    errors = {column.quantity: rounding(column.format) for column in chosen.columns}
+    energy = errors.get("energy", (0.0, 0.0))
+    force = errors.get("force") or errors.get("slope") or (0.0, 0.0)
+    separation = errors.get("separation", (0.0, 0.0))
+    return Rounding(
+        energy_relative=energy[0],
+        energy_absolute=energy[1] * float(units.energy.factor),
+        force_relative=force[0],
+        force_absolute=force[1] * float(units.force.factor),
+        separation_relative=separation[0],
+        separation_absolute=separation[1] * float(units.length.factor),
+    )
 
 
 def rounding(number_format: str) -> tuple[float, float]:

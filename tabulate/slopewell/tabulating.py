@@ -5,13 +5,14 @@ from __future__ import annotations
 from collections.abc import Iterable
 from dataclasses import dataclass, replace
 from pathlib import Path
+from typing import Any
 
-from .checks import ERROR, WARNING, POTENTIAL_CHECKS, Finding, PotentialFacts
+from .checks import ERROR, POTENTIAL_CHECKS, WARNING, Finding, PotentialFacts
 from .checks.printed_digits import look as printed_digits
 from .document import read_document
-from .outputs import Target, certified_rows, rounding, targets, unit_systems, write_target
+from .outputs import Target, certified_rows, printed, rounding, targets, unit_systems, write_target
 from .problems import Problem, UnusableInput, nearest
-from .reports import Report
+from .reports import Report, certificate_record
 from .table import Rows
 from .units import UnitSystem
 from .workflow import Track, check_document, silently
@@ -64,7 +65,8 @@ def tabulate(
         return Tabulated(Report((subject,)), ())
     tables = {units: _rows(facts, units, track) for units in unit_systems(found)}
     digits = tuple(finding for target in found for finding in _digits(target, facts, tables[target.units]))
-    subject = replace(subject, findings=subject.findings + digits)
+    prints = tuple(record for target in found for record in _printed(target, facts))
+    subject = replace(subject, findings=subject.findings + digits, certificates=subject.certificates + prints)
     # A stored report names the file without its folder: the same document gives the same bytes anywhere.
     stored = Report((replace(subject, file=Path(document.file).name),)).record()
     for target in track(found, "writing"):
@@ -98,6 +100,21 @@ def _digits(target: Target, facts: list[PotentialFacts], rows: dict[str, Rows]) 
                 target.path.name,
             )
     return findings
+
+
+def _printed(target: Target, facts: list[PotentialFacts]) -> list[dict[str, Any]]:
+    """Return the certificates of a text file, in which the digits that it prints count too."""
+    if target.layout is None:
+        return []
+    digits = printed(target.layout, target.units)
+    records = []
+    for one in facts:
+        if one.potential.name in target.names:
+            rule = target.layout.interpolation or one.grid.interpolation
+            bound = one.bounds.bound(one.rows, one.grid.spacing, rule, one.grid.ends, digits)
+            certificate = replace(one.certificate, interpolation=rule, bound=bound).record(one.units)
+            records.append(certificate_record(one, {"file": target.path.name, **certificate}))
+    return records
 
 
 def known_checks(names: Iterable[str]) -> tuple[str, ...]:

@@ -35,7 +35,7 @@ def test_every_sample_gives_a_report_that_fits_the_schema() -> None:
     record = json.loads(json.dumps(check(files).record(), allow_nan=False))
     assert list(Draft202012Validator(schema("report")).iter_errors(record)) == []
     assert [subject["file"] for subject in record["subjects"]] == [str(path) for path in files]
-    assert {subject["verdict"] for subject in record["subjects"]} == {"fail", "unusable"}
+    assert {subject["verdict"] for subject in record["subjects"]} <= {"fail", "warn", "unusable"}
 
 
 def test_landmarks_are_in_the_documents_units(tmp_path: Path) -> None:

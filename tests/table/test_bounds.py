@@ -17,7 +17,8 @@ from slopewell.formula.branches import resolve
 from slopewell.formula.tree import add
 from slopewell.potential import Curve, Cutoff, treat
 from slopewell.table import evaluate, separations
-from slopewell.table.bounds import Bound, ErrorBounds, Rounding
+from slopewell.table.bounds import Bound, ErrorBounds
+from slopewell.table.rounding import Rounding
 from slopewell.units import quantity
 from slopewell.units.constants import BOLTZMANN, COULOMB
 

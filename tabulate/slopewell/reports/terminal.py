@@ -63,13 +63,15 @@ def print_subject(subject: Subject, console: Console, curves: Curves | None = No
     console.print(head)
     if subject.title:
         print_indented(Text(subject.title, style="dim"), 2, console)
-    certificates = {record["interaction"]: record for record in subject.certificates}
+    certificates = {record["interaction"]: record for record in subject.certificates if "file" not in record}
+    texts = [record for record in subject.certificates if "file" in record]
     pairs = {record["interaction"]: pair_lines(record, _units(subject)) for record in subject.pairs}
     for record in subject.landmarks:
         print_landmarks(record, console)
         for label, value in pairs.get(record["interaction"], []):
             print_indented(Text(f"{label:<{LABEL_WIDTH}}{value}"), 4, console)
-        for label, value in certificate_lines(certificates.get(record["interaction"], {})):
+        printed = [text_line(text) for text in texts if text["interaction"] == record["interaction"]]
+        for label, value in [*certificate_lines(certificates.get(record["interaction"], {})), *printed]:
             print_indented(Text(f"{label:<{LABEL_WIDTH}}{value}"), 4, console)
         for line in (curves or {}).get((subject.file, record["interaction"]), ()):
             print_indented(Text(line, no_wrap=True, overflow="crop"), 4, console)
@@ -159,6 +161,15 @@ def certificate_lines(record: dict[str, Any]) -> list[tuple[str, str]]:
             )
         )
     return lines
+
+
+def text_line(record: dict[str, Any]) -> tuple[str, str]:
+    """Return what is proved about a text file, its printed digits included, as label and value."""
+    length, energy = record["units"]["length"], record["units"]["energy"]
+    if not record["proved"]:
+        return f"in {record['file']}", "no bound could be proved"
+    errors = f"{record['energy_error_bound']:.3g} {energy} and {record['force_error_bound']:.3g} {energy}/{length}"
+    return f"in {record['file']}", f"{errors} with the digits it prints"
 
 
 EVEN_IN = {"separation": "r", "separation-squared": "r²", "inverse": "1/r", "logarithmic": "log r"}

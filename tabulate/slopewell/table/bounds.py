@@ -14,6 +14,7 @@ from ..potential import Curve, Potential
 from .direct import interval_bound
 from .edges import edge_bounds
 from .profile import Stretch, first_stretches
+from .rounding import EXACT, Rounding, energy_rounding, force_rounding
 from .rules import RULES, SLOPE_IN_ENERGY, SLOPE_IN_FORCE, Rule, Term
 from .spacing import Spacing
 from .spline import NO_SLOPE_ERRORS, SlopeErrors, residuals, slope_errors
@@ -27,23 +28,6 @@ COARSE = 0.05
 """Length of a row interval, against its separation, from which on its error is enclosed directly."""
 FINEST = 8
 """Part of half a row interval below which a stretch is not cut: the interval is what counts then."""
-STORED = 2.0**-50
-"""Relative rounding of a stored number, against the size of the terms it is made of."""
-
-
-@dataclass(frozen=True, slots=True)
-class Rounding:
-    """Rounding of the digits that a text table prints, beyond that of double precision."""
-
-    energy_relative: float = 0.0
-    energy_absolute: float = 0.0
-    force_relative: float = 0.0
-    force_absolute: float = 0.0
-    separation_relative: float = 0.0
-    separation_absolute: float = 0.0
-
-
-EXACT = Rounding()
 
 
 @dataclass(frozen=True, slots=True)
@@ -181,7 +165,7 @@ class ErrorBounds:
         """Return the largest energy error of intervals on one piece each, and where it lies."""
 
         def added(part: Stretch, h: float) -> float:
-            rounded = _energy_rounding(part.largest, part, h, rounding, rule)
+            rounded = energy_rounding(part.largest, part, h, rounding, rule)
             return SLOPE_IN_ENERGY * h * slopes.about(part.low, part.high) + rounded
 
         return self._largest(grid, rule, rule.energy, added)
@@ -192,7 +176,7 @@ class ErrorBounds:
         """Return the largest force error of intervals on one piece each, and where it lies."""
 
         def added(part: Stretch, h: float) -> float:
-            rounded = _force_rounding(part.largest, part, h, rounding, rule)
+            rounded = force_rounding(part.largest, part, h, rounding, rule)
             return SLOPE_IN_FORCE * slopes.about(part.low, part.high) + rounded
 
         return self._largest(grid, rule, rule.force, added)
@@ -261,32 +245,6 @@ class ErrorBounds:
         """Return bounds on the errors of a cubic spline's slopes at its knots."""
         self.cut_until_sharp(grid, lambda index: residuals(self.stretches[index], grid))
         return slope_errors(self.curve, grid, ends, self.stretches)
-
-
-def _energy_rounding(
-    derivatives: tuple[float, ...], part: Stretch, h: float, rounding: Rounding, rule: Rule
-) -> float:
-    energy, force = derivatives[0], derivatives[1]
-    stored = STORED * (energy + part.high * force)
-    printed = rounding.energy_relative * energy + rounding.energy_absolute
-    moved = (rounding.separation_relative * part.high + rounding.separation_absolute) * force
-    slopes = 0.0
-    if rule.name != "linear":
-        slopes = h / 4 * (rounding.force_relative * force + rounding.force_absolute)
-    return stored + printed + moved + slopes
-
-
-def _force_rounding(
-    derivatives: tuple[float, ...], part: Stretch, h: float, rounding: Rounding, rule: Rule
-) -> float:
-    energy, force, stiffness = derivatives[:3]
-    stored = STORED * (force + part.high * stiffness)
-    printed = rounding.force_relative * force + rounding.force_absolute
-    moved = (rounding.separation_relative * part.high + rounding.separation_absolute) * stiffness
-    steep = 0.0
-    if rule.name != "linear":
-        steep = 3 / h * (rounding.energy_relative * energy + rounding.energy_absolute + STORED * energy)
-    return stored + printed + moved + steep
 
 
 def error_bounds(potential: Potential, grid: Grid) -> ErrorBounds:

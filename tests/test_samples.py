@@ -13,9 +13,7 @@ from slopewell.workflow import check
 
 SAMPLES = ROOT / "samples"
 FAULTY = SAMPLES / "faulty"
-TABLE = re.findall(
-    r"\| `(\S+\.toml)` \| (.*?) \| (\d) \|", (FAULTY / "README.md").read_text(encoding="utf-8")
-)
+TABLE = re.findall(r"\| `(\S+\.toml)` \| (.*?) \| (\d) \|", (FAULTY / "README.md").read_text(encoding="utf-8"))
 
 
 def report_of(path: Path) -> Report:
@@ -33,6 +31,28 @@ def test_the_membrane_says_that_it_is_invented() -> None:
     text = (SAMPLES / "membrane.toml").read_text(encoding="utf-8")
     assert "invented" in text.partition("\n")[0]
     assert re.search(r"^source .*[Ii]nvented", text, re.MULTILINE)
+
+
+def test_the_ceramic_tabulates_every_pair_of_its_species(tmp_path: Path) -> None:
+    assert main(["tabulate", str(SAMPLES / "ceramic.toml"), "--into", str(tmp_path)]) == 0
+    assert (tmp_path / "ceramic.h5").is_file()
+    assert len(list(tmp_path.glob("ceramic-*-*.csv"))) == 10
+
+
+def test_the_scan_gives_back_the_parameters_that_it_was_made_with() -> None:
+    (subject,) = report_of(SAMPLES / "scan" / "beads.toml").subjects
+    (fit,) = next(pair for pair in subject.pairs if pair["interaction"] == "H-H")["fits"]
+    made_with = {"D": 3.4, "a": 6.2, "r0": 0.56}
+    for name, found in fit["parameters"].items():
+        assert abs(found["value"] - made_with[name]) < 3 * found["standard_error"]
+
+
+@pytest.mark.parametrize(
+    "name", ["ceramic.toml", "scan/beads.toml", "scan/heads.csv", "scan/sterols.csv", "scan/head-sterol.csv"]
+)
+def test_a_sample_says_that_it_is_invented(name: str) -> None:
+    text = (SAMPLES / name).read_text(encoding="utf-8")
+    assert "nvented" in text.partition("\n")[0]
 
 
 def test_every_faulty_sample_is_listed() -> None:

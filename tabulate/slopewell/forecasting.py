@@ -50,9 +50,7 @@ class Forecast:
         factor, unit = self._unit(one.figure.unit)
         keys = dict(one.figure.keys)
         if "number_density" in keys:
-            keys["number_density"] = (
-                float(keys["number_density"]) * float(self.studied.units.length.factor) ** 3
-            )
+            keys["number_density"] = float(keys["number_density"]) * float(self.studied.units.length.factor) ** 3
             keys["number_density_unit"] = f"{self.studied.units.length.text}^-3"
         return {
             "subject": one.figure.subject,
@@ -99,7 +97,7 @@ def predict(
     temperatures : sequence of float, optional
         Of the gas, in kelvin.
     number_density : float, optional
-        Of the fluid, in Å⁻³.
+        Of the fluid, in Å⁻³; that of the document by default.
     structures : sequence of str
         Names of crystals; all by default.
     reading, document, masses
@@ -113,17 +111,14 @@ def predict(
     for name in structures:
         known = [structure.name for structure in STRUCTURES]
         if name not in known:
-            raise UnusableInput(
-                [Problem("--structure", f'There is no structure "{name}".', nearest(name, known))]
-            )
+            raise UnusableInput([Problem("--structure", f'There is no structure "{name}".', nearest(name, known))])
     studied = study(path, reading=reading, document=document, masses=masses)
     _require_pairs(studied, structures)
     usual = Setting().temperatures
     if studied.temperature is not None:
         usual = tuple(sorted({*usual, studied.temperature}))
-    setting = Setting(
-        tuple(temperatures) if temperatures is not None else usual, number_density, tuple(structures)
-    )
+    density = number_density or studied.number_density
+    setting = Setting(tuple(temperatures) if temperatures is not None else usual, density, tuple(structures))
     compared = tuple(compare(studied.curve, studied.table, setting))
     return Forecast(studied, setting, compared, tuple(notes(studied, compared)))
 
@@ -145,9 +140,7 @@ def notes(studied: Studied, compared: Sequence[Compared]) -> list[str]:
         found.append(f"No crystal or mixture that needs {', '.join(missing)}: the pair is missing.")
     without = [name for name in system.species if name not in system.masses]
     if without:
-        found.append(
-            f"No vibrations, frequencies or quantum correction where a mass is missing: {', '.join(without)}."
-        )
+        found.append(f"No vibrations, frequencies or quantum correction where a mass is missing: {', '.join(without)}.")
     for pair, curve in system.curves.items():
         power = curve.wall[1]
         first = f"{curve.start / float(length.factor):.6g} {length.text}"
@@ -156,9 +149,7 @@ def notes(studied: Studied, compared: Sequence[Compared]) -> list[str]:
         bare = system.untreated.get(pair)
         if bare is not None and isinf(bare.reach) and pair not in studied.cut:
             last = f"{curve.end / float(length.factor):.6g} {length.text}"
-            found.append(
-                f"{curve.name}: no cutoff: the curve goes on by its formula, the table ends at {last}."
-            )
+            found.append(f"{curve.name}: no cutoff: the curve goes on by its formula, the table ends at {last}.")
     if studied.screened:
         found.append("Formulas with ke hold their own charges; none are added by Ewald summation.")
     if any(one.part == "crystal" for one in compared):

@@ -43,6 +43,8 @@ class Studied:
         The rows of each pair, in the file's units.
     interactions : mapping
         What the document says of each pair.
+    number_density : float or None
+        In Å⁻³, where the document gives one.
     """
 
     file: str
@@ -56,6 +58,7 @@ class Studied:
     screened: bool = False
     rows: Mapping[Pair, Rows] = field(default_factory=dict)
     interactions: Mapping[Pair, Interaction] = field(default_factory=dict)
+    number_density: float | None = None
 
 
 def study(
@@ -147,6 +150,7 @@ def _with_document(
         screened,
         {one.between: rows[one.name] for one in potentials},
         {one.potential.between: one for one in ones},
+        document.number_density,
     )
 
 

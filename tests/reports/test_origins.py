@@ -3,6 +3,7 @@
 from __future__ import annotations
 
 from collections.abc import Callable
+from hashlib import sha256
 from pathlib import Path
 from typing import Any
 
@@ -65,3 +66,10 @@ def test_the_report_with_pairs_fits_its_schema(tmp_path: Path) -> None:
     record = {"schema": "slopewell/report/1", "subjects": [subject.record()]}
     assert len(record["subjects"][0]["pairs"]) == 3
     Draft202012Validator(schema("report")).validate(record)
+
+
+def test_files_of_points_are_told_by_their_checksum(tmp_path: Path) -> None:
+    content = "\n".join(f"{r} {10 / r**6}" for r in (2.5, 3, 4, 5, 6, 7, 8, 9))
+    (tmp_path / "scan.dat").write_text(content, encoding="utf-8")
+    (record,) = pair_records(read(text('points = "scan.dat"\n'), tmp_path))
+    assert record["points"] == [{"file": "scan.dat", "sha256": sha256(content.encode()).hexdigest()}]

@@ -56,8 +56,7 @@ class _Builder:
         density = self.positive("number-density", "length^-3", units, "A number density")
         interactions = self.interactions(setting)
         outputs = tuple(
-            self.output(f"output[{i}]", entry, len(interactions))
-            for i, entry in enumerate(self.data.get("output", []))
+            self.output(f"output[{i}]", entry, len(interactions)) for i, entry in enumerate(self.data.get("output", []))
         )
         source = self.notes.source
         return Document(
@@ -83,9 +82,7 @@ class _Builder:
             temperature=self.optional("temperature", read_temperature),
             energy_scale=self.positive("energy-scale", "energy", units, "An energy scale"),
             masses=self.masses(units),
-            charges={
-                name: Fraction(it["charge"]) for name, it in self.data["species"].items() if "charge" in it
-            },
+            charges={name: Fraction(it["charge"]) for name, it in self.data["species"].items() if "charge" in it},
             grid=self.data.get("grid"),
             cutoff=self.data.get("cutoff"),
         )
@@ -100,9 +97,7 @@ class _Builder:
             stated[frozenset(entry["between"])] = read[1] if read else None
             found += [read[0]] if read else []
         if "mixing" in self.data:
-            found += mixed_interactions(
-                self.notes, self.data["mixing"], list(self.data["species"]), stated, setting
-            )
+            found += mixed_interactions(self.notes, self.data["mixing"], list(self.data["species"]), stated, setting)
         return tuple(found)
 
     def optional(self, key: str, read: Any) -> Any:
@@ -138,9 +133,7 @@ class _Builder:
                     self.notes.add(path, f'The species "{name}" is not declared.', f"Add [species.{name}].")
             pair = frozenset(entry["between"])
             if pair in seen:
-                says = (
-                    f"{'-'.join(entry['between'])} is given twice: interaction[{seen[pair]}] has it already."
-                )
+                says = f"{'-'.join(entry['between'])} is given twice: interaction[{seen[pair]}] has it already."
                 self.notes.add(path, says, "Keep one of the two.")
             elif (called := "-".join(entry["between"])) in called_so:
                 says = f"interaction[{called_so[called]}] is called {called} too."

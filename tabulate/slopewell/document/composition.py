@@ -75,9 +75,7 @@ def read_composition(
             for place, term in zip(places, entry["term"], strict=True)
         ]
         kept = [part for part in parts if part is not None]
-        return (
-            _gathered(add_curves([p.curve for p in kept]), kept, " + ") if len(kept) == len(parts) else None
-        )
+        return _gathered(add_curves([p.curve for p in kept]), kept, " + ") if len(kept) == len(parts) else None
     if "points" in entry:
         return _spline(notes, path, entry, setting, within)
     return _formula(notes, path, entry, setting, within)
@@ -106,9 +104,7 @@ def _gathered(curve: Curve, parts: list[Composition], sign: str) -> Composition:
     )
 
 
-def _formula(
-    notes: Notes, path: str, entry: Mapping[str, Any], setting: Setting, within: Range
-) -> Composition | None:
+def _formula(notes: Notes, path: str, entry: Mapping[str, Any], setting: Setting, within: Range) -> Composition | None:
     found: tuple[Fit, ...] = ()
     if "fit" in entry:
         done = fitted(notes, path, entry, setting)
@@ -119,9 +115,7 @@ def _formula(
     formula = read_formula(notes, path, entry, setting.units)
     if formula is None:
         return None
-    curve = read_curve(
-        notes, f"{path}.{'form' if formula.form else 'energy'}", formula.bound("energy"), within
-    )
+    curve = read_curve(notes, f"{path}.{'form' if formula.form else 'energy'}", formula.bound("energy"), within)
     if curve is None:
         return None
     return Composition(
@@ -143,9 +137,7 @@ def read_curve(notes: Notes, path: str, tree: Tree, within: Range) -> Curve | No
         return None
 
 
-def _spline(
-    notes: Notes, path: str, entry: Mapping[str, Any], setting: Setting, within: Range
-) -> Composition | None:
+def _spline(notes: Notes, path: str, entry: Mapping[str, Any], setting: Setting, within: Range) -> Composition | None:
     kind = entry.get("spline", "cubic")
     points = read_points(notes, path, "points", entry, setting)
     if points is None:
@@ -163,9 +155,7 @@ def _segments(
     notes: Notes, path: str, segments: list[Mapping[str, Any]], setting: Setting, within: Range
 ) -> Composition | None:
     before = len(notes.problems)
-    joins = [
-        _join(notes, f"{path}[{index}]", segment, setting) for index, segment in enumerate(segments) if index
-    ]
+    joins = [_join(notes, f"{path}[{index}]", segment, setting) for index, segment in enumerate(segments) if index]
     if "join" in segments[0]:
         notes.add(f"{path}[0].join", "The first segment has none before it to join.", "Take out join.")
     kept = [join for join in joins if join is not None]

@@ -139,9 +139,7 @@ def _own_values(notes: Notes, path: str, given: dict[str, Any]) -> Named:
     named = _built_in()
     for name, value in given.items():
         if name in (COORDINATE, *CONSTANTS, *FUNCTIONS):
-            notes.add(
-                f"{path}.{name}", f'"{name}" has a meaning of its own in formulas.', "Choose another name."
-            )
+            notes.add(f"{path}.{name}", f'"{name}" has a meaning of its own in formulas.', "Choose another name.")
             continue
         found = named_value(name, value, notes, f"{path}.{name}")
         if found is not None:
@@ -170,9 +168,7 @@ def _advice(name: str, named: Named) -> str:
     return f"Give it under parameters. {nearest(name, named.dimensions)}"
 
 
-def _check_dimensions(
-    notes: Notes, path: str, texts: dict[str, str], trees: dict[str, Tree], named: Named
-) -> None:
+def _check_dimensions(notes: Notes, path: str, texts: dict[str, str], trees: dict[str, Tree], named: Named) -> None:
     wanted = {"energy": dimension("energy"), "force": dimension("energy length^-1")}
     for key, tree in trees.items():
         try:

@@ -19,16 +19,14 @@ from ..potential.splines import Points
 from ..units.constants import BOLTZMANN
 from ..units.system import QUANTITY, UnitSystem, quantity
 from .energy import Formula, read_formula
-from .points import checksum, read_points
+from .points import read_points
 from .setting import Setting
 from .values import Notes, read_temperature, scale
 
 Array = NDArray[np.float64]
 
 
-def fitted(
-    notes: Notes, path: str, entry: Mapping[str, Any], setting: Setting
-) -> tuple[Mapping[str, Any], Fit] | None:
+def fitted(notes: Notes, path: str, entry: Mapping[str, Any], setting: Setting) -> tuple[Mapping[str, Any], Fit] | None:
     """Return the entry with fitted parameters, and the fit; None, and problems noted, if there is none."""
     given, names = entry["fit"], entry["fit"]["parameters"]
     filled = _with_starts(entry, names, setting.units)
@@ -45,7 +43,7 @@ def fitted(
     if weight is None:
         return None
     try:
-        return _fit(filled, given, formula, points, weight, kelvin, setting)
+        return _fit(filled, given, formula, points, weight, kelvin)
     except FitError as error:
         notes.add(
             f"{path}.fit",
@@ -61,11 +59,7 @@ def _with_starts(entry: Mapping[str, Any], names: list[str], units: UnitSystem) 
     given = dict(entry.get("parameters", {}))
     for parameter in form.parameters if form else ():
         if parameter.name in names and parameter.name not in given:
-            example = (
-                Fraction(parameter.example)
-                if parameter.dimension == "1"
-                else quantity(parameter.example).value
-            )
+            example = Fraction(parameter.example) if parameter.dimension == "1" else quantity(parameter.example).value
             given[parameter.name] = Decimal(repr(float(example / scale(parameter.dimension, units))))
     return {**{key: value for key, value in entry.items() if key != "fit"}, "parameters": given}
 
@@ -118,7 +112,6 @@ def _fit(
     points: Points,
     weight: Array,
     kelvin: Fraction | None,
-    setting: Setting,
 ) -> tuple[Mapping[str, Any], Fit]:
     names = given["parameters"]
     r, energy = points.arrays()
@@ -138,8 +131,8 @@ def _fit(
     for name, value in zip(names, solution.values, strict=True):
         parameters[name] = _written(parameters[name], float(value), float(fixed[name]))
     fit = Fit(
-        file=given["to"],
-        sha256=checksum(setting, given["to"]),
+        file=points.file,
+        sha256=points.sha256,
         points=r.size,
         weight=given.get("weight", "uniform"),
         temperature=float(kelvin) if kelvin is not None and given.get("weight") == "boltzmann" else None,
@@ -156,9 +149,7 @@ def _guess(form: Form | None, names: list[str], start: Array, r: Array, energy: 
     dimensions = {p.name: p.dimension for p in form.parameters} if form else {}
     deepest = int(np.argmin(energy))
     seen = {"energy": float(-energy[deepest]), "length": float(r[deepest])}
-    guess = [
-        seen.get(dimensions.get(name, ""), value) for name, value in zip(names, start.tolist(), strict=True)
-    ]
+    guess = [seen.get(dimensions.get(name, ""), value) for name, value in zip(names, start.tolist(), strict=True)]
     return np.array([g if g > 0 else s for g, s in zip(guess, start.tolist(), strict=True)])
 
 

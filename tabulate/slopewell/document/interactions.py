@@ -64,9 +64,7 @@ def read_interaction(
     return Interaction(potential, grid, expectations, origin or Origin(), whole.fits), found
 
 
-def _charged(
-    notes: Notes, path: str, entry: Mapping[str, Any], setting: Setting, found: Composition
-) -> Composition:
+def _charged(notes: Notes, path: str, entry: Mapping[str, Any], setting: Setting, found: Composition) -> Composition:
     if not entry.get("charges", False):
         return found
     if "force" in entry:
@@ -74,9 +72,7 @@ def _charged(
         notes.add(f"{path}.charges", says, "Take out force or charges.")
     missing = sorted({name for name in entry["between"] if name not in setting.charges})
     for name in missing:
-        notes.add(
-            f"{path}.charges", f'The species "{name}" has no charge.', f"Add charge = … to [species.{name}]."
-        )
+        notes.add(f"{path}.charges", f'The species "{name}" has no charge.', f"Add charge = … to [species.{name}].")
     if missing:
         return found
     first, second = entry["between"]
@@ -87,9 +83,7 @@ def _force(notes: Notes, path: str, found: Composition, grid: Grid) -> Curve | N
     return None if found.force is None else read_curve(notes, path, found.force, (grid.start, grid.end))
 
 
-def _expectations(
-    notes: Notes, path: str, given: Mapping[str, Any], potential: Potential
-) -> tuple[Expectation, ...]:
+def _expectations(notes: Notes, path: str, given: Mapping[str, Any], potential: Potential) -> tuple[Expectation, ...]:
     if "harmonic-wavenumber" in given and potential.reduced_mass is None:
         says = "A wavenumber needs the masses of both species."
         notes.add(f"{path}.harmonic-wavenumber", says, "Give them under species.")

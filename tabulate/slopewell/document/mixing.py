@@ -28,9 +28,7 @@ def mixed_interactions(
     overrides = mixing.get("override", [])
     places = _pairs(notes, "mixing.override", [one["between"] for one in overrides], species)
     for pair in sorted(excluded & stated.keys(), key=sorted):
-        notes.add(
-            "mixing.exclude", f"{_name(pair, species)} is excluded, but stated too.", "Take one of them out."
-        )
+        notes.add("mixing.exclude", f"{_name(pair, species)} is excluded, but stated too.", "Take one of them out.")
     for pair in sorted(places & stated.keys(), key=sorted):
         notes.add(
             "mixing.override",
@@ -41,9 +39,7 @@ def mixed_interactions(
         pair = frozenset((one, other))
         if pair in stated or pair in excluded:
             continue
-        index = next(
-            (k for k, override in enumerate(overrides) if frozenset(override["between"]) == pair), None
-        )
+        index = next((k for k, override in enumerate(overrides) if frozenset(override["between"]) == pair), None)
         path = "mixing" if index is None else f"mixing.override[{index}]"
         override = {} if index is None else overrides[index]
         made = _entry(notes, path, (one, other), {**mixing, **override}, override, stated, setting)
@@ -56,9 +52,7 @@ def _pairs(notes: Notes, path: str, listed: list[list[str]], species: list[str])
     for index, between in enumerate(listed):
         for name in between:
             if name not in species:
-                notes.add(
-                    f"{path}[{index}]", f'The species "{name}" is not declared.', f"Add [species.{name}]."
-                )
+                notes.add(f"{path}[{index}]", f'The species "{name}" is not declared.', f"Add [species.{name}].")
         if any(frozenset(between) == frozenset(earlier) for earlier in listed[:index]):
             notes.add(f"{path}[{index}]", f"{'-'.join(between)} is listed twice.", "Take one out.")
     return {frozenset(between) for between in listed}
@@ -85,9 +79,7 @@ def _entry(
     first, _second = likes
     form = catalogue()[first.form]
     try:
-        values = mixed(
-            rule["rule"], form.name, *({p.name: c.values[p.name] for p in form.parameters} for c in likes)
-        )
+        values = mixed(rule["rule"], form.name, *({p.name: c.values[p.name] for p in form.parameters} for c in likes))
     except ValueError as error:
         notes.add(path, f"{'-'.join(between)}: {error}.", _WRITE.format(*between))
         return None
@@ -101,9 +93,7 @@ def _entry(
         "charges": rule.get("charges", False),
     }
     entry |= {key: override[key] for key in ("cutoff", "grid") if key in override}
-    shown = {
-        name: float(value) if isinstance(value, Fraction) else value for name, value in parameters.items()
-    }
+    shown = {name: float(value) if isinstance(value, Fraction) else value for name, value in parameters.items()}
     return entry, Origin("mixed", rule["rule"], form.name, shown)
 
 
@@ -133,9 +123,7 @@ def _likes(
             notes.add(path, says, _WRITE.format(*between))
             return None
     if first.form != second.form:
-        forms = " and ".join(
-            f"{one}-{one} is {c.form}" for one, c in zip(between, (first, second), strict=True)
-        )
+        forms = " and ".join(f"{one}-{one} is {c.form}" for one, c in zip(between, (first, second), strict=True))
         says = f"{name} can't be mixed: {forms}."
         notes.add(path, says, _WRITE.format(*between))
         return None

@@ -5,6 +5,7 @@ from __future__ import annotations
 import hashlib
 import re
 from collections.abc import Mapping
+from dataclasses import replace
 from fractions import Fraction
 from typing import Any
 
@@ -22,9 +23,7 @@ NUMBER = re.compile(r"[-+]?(?:\d+\.?\d*|\.\d+)(?:[eE][-+]?\d{1,3})?")
 MOST_POINTS = 10_000
 
 
-def read_points(
-    notes: Notes, path: str, key: str, given: Mapping[str, Any], setting: Setting
-) -> Points | None:
+def read_points(notes: Notes, path: str, key: str, given: Mapping[str, Any], setting: Setting) -> Points | None:
     """Return the points that a file holds, ascending; None, and problems noted, if it can't be used.
 
     Parameters
@@ -46,7 +45,7 @@ def read_points(
         return None
     rows.sort(key=lambda row: row[names.index("separation")])
     columns = {name: [row[index] for row in rows] for index, name in enumerate(names)}
-    points = _points(columns, units)
+    points = replace(_points(columns, units), file=given[key], sha256=_checksum(setting, given[key]))
     says = _fault(points, given.get("spline", "cubic") if key == "points" else "")
     if says:
         notes.add(place, f"{given[key]}: {says[0]}", says[1])
@@ -54,7 +53,7 @@ def read_points(
     return points
 
 
-def checksum(setting: Setting, file: str) -> str:
+def _checksum(setting: Setting, file: str) -> str:
     """Return the SHA-256 of a file beside the document."""
     return hashlib.sha256((setting.folder / file).read_bytes()).hexdigest()
 
@@ -74,9 +73,7 @@ def _check_names(notes: Notes, path: str, names: list[str]) -> bool:
     return True
 
 
-def _rows(
-    notes: Notes, place: str, file: str, setting: Setting, names: list[str]
-) -> list[list[Fraction]] | None:
+def _rows(notes: Notes, place: str, file: str, setting: Setting, names: list[str]) -> list[list[Fraction]] | None:
     try:
         text = (setting.folder / file).read_text(encoding="utf-8-sig")
     except (OSError, ValueError) as error:
@@ -96,21 +93,15 @@ def _rows(
         if not rows and not NUMBER.fullmatch(tokens[0]):
             continue
         if len(tokens) != len(names):
-            says = (
-                f"{file}, line {number}: {len(tokens)} columns; {len(names)} are named ({', '.join(names)})."
-            )
-            notes.add(
-                place, says, "Name every column under columns; call those without meaning skip.", line[:100]
-            )
+            says = f"{file}, line {number}: {len(tokens)} columns; {len(names)} are named ({', '.join(names)})."
+            notes.add(place, says, "Name every column under columns; call those without meaning skip.", line[:100])
             return None
         faulty = next(
             (t for t, name in zip(tokens, names, strict=True) if name != "skip" and not NUMBER.fullmatch(t)),
             None,
         )
         if faulty is not None:
-            notes.add(
-                place, f'{file}, line {number}: "{faulty[:30]}" is no number.', "Mend that row.", line[:100]
-            )
+            notes.add(place, f'{file}, line {number}: "{faulty[:30]}" is no number.', "Mend that row.", line[:100])
             return None
         rows.append([Fraction(t) if NUMBER.fullmatch(t) else Fraction(0) for t in tokens])
         if len(rows) > MOST_POINTS:

@@ -24,9 +24,7 @@ def read_grid(notes: Notes, path: str, entry: Mapping[str, Any], setting: Settin
         notes.add(path, "This interaction has no grid.", "Add [grid] to the document, or a grid of its own.")
         return None
     units = setting.units
-    start, end = (
-        read_quantity(notes, f"{place}.{key}", given[key], "length", units) for key in ("from", "to")
-    )
+    start, end = (read_quantity(notes, f"{place}.{key}", given[key], "length", units) for key in ("from", "to"))
     if start is None or end is None:
         return None
     if start <= 0:
@@ -35,9 +33,7 @@ def read_grid(notes: Notes, path: str, entry: Mapping[str, Any], setting: Settin
     if end <= start:
         notes.add(f"{place}.to", "The grid ends before it starts.", "Let to be larger than from.")
         return None
-    tolerances = [
-        _tolerance(notes, f"{place}.{key}", given.get(key), powers, units) for key, powers in TOLERANCES
-    ]
+    tolerances = [_tolerance(notes, f"{place}.{key}", given.get(key), powers, units) for key, powers in TOLERANCES]
     return Grid(
         start=start,
         end=end,
@@ -69,17 +65,11 @@ def read_cutoff(
     if given is None:
         return None
     at = read_quantity(notes, f"{place}.at", given["at"], "length", setting.units)
-    start = (
-        read_quantity(notes, f"{place}.from", given["from"], "length", setting.units)
-        if "from" in given
-        else None
-    )
+    start = read_quantity(notes, f"{place}.from", given["from"], "length", setting.units) if "from" in given else None
     if at is None or grid is None or ("from" in given and start is None):
         return None
     if at > grid.end:
-        notes.add(
-            f"{place}.at", "The cutoff lies beyond the end of the grid.", "Let the grid reach the cutoff."
-        )
+        notes.add(f"{place}.at", "The cutoff lies beyond the end of the grid.", "Let the grid reach the cutoff.")
         return None
     if at <= grid.start:
         notes.add(f"{place}.at", "The cutoff lies before the start of the grid.", "Start the grid closer in.")

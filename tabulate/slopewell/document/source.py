@@ -59,9 +59,7 @@ def parse_source(text: str, file: str, sha256: str) -> Source:
     is_json = file.lower().endswith(".json") or text.lstrip()[:1] == "{"
     data = _json(text, file) if is_json else _toml(text, file)
     if not isinstance(data, dict):
-        raise UnusableInput(
-            [Problem("", "The document is not a table of keys.", "Begin with schema = …")], file
-        )
+        raise UnusableInput([Problem("", "The document is not a table of keys.", "Begin with schema = …")], file)
     if problems := _outsize_numbers(data, ""):
         raise UnusableInput(problems, file)
     return Source(file, text, sha256, data, {} if is_json else key_lines(text))
@@ -133,14 +131,10 @@ def _json(text: str, file: str) -> Any:
 def _outsize_numbers(value: Any, path: str) -> list[Problem]:
     """Find numbers that no table could hold: infinities, and those beyond the range of doubles."""
     if isinstance(value, dict):
-        return [
-            p for key, part in value.items() for p in _outsize_numbers(part, f"{path}.{key}" if path else key)
-        ]
+        return [p for key, part in value.items() for p in _outsize_numbers(part, f"{path}.{key}" if path else key)]
     if isinstance(value, list):
         return [p for index, part in enumerate(value) for p in _outsize_numbers(part, f"{path}[{index}]")]
-    outsize = isinstance(value, Decimal) and (
-        not value.is_finite() or abs(value.adjusted()) > LARGEST_EXPONENT
-    )
+    outsize = isinstance(value, Decimal) and (not value.is_finite() or abs(value.adjusted()) > LARGEST_EXPONENT)
     if outsize or (isinstance(value, int) and abs(value) > 10**LARGEST_EXPONENT):
         shown = str(value) if len(str(value)) < 30 else "This number"
         return [Problem(path, f"{shown} is not a finite number within ±1e300.", "Give a finite number.")]

@@ -74,9 +74,7 @@ def _explain(error: Any, line: Callable[[str], int | None]) -> list[Problem]:
 
 def _missing(path: str, key: str, line: Callable[[str], int | None]) -> Problem:
     where = path or "the document"
-    return _problem(
-        line, f"{path}.{key}" if path else key, f'The key "{key}" is missing in {where}.', f"Add {key} = …"
-    )
+    return _problem(line, f"{path}.{key}" if path else key, f'The key "{key}" is missing in {where}.', f"Add {key} = …")
 
 
 def _alternatives(error: Any, path: str, line: Callable[[str], int | None]) -> Problem:
@@ -85,9 +83,7 @@ def _alternatives(error: Any, path: str, line: Callable[[str], int | None]) -> P
     quoted = [f'"{key}"' for key in keys]
     listing = " or ".join([", ".join(quoted[:-1]), quoted[-1]])
     if given:
-        return _problem(
-            line, f"{path}.{given[-1]}", f"Only one of {listing} may be given.", f"Take out {given[-1]}."
-        )
+        return _problem(line, f"{path}.{given[-1]}", f"Only one of {listing} may be given.", f"Take out {given[-1]}.")
     return _problem(line, path, f"One of {listing} is missing.", f"Add {keys[0]} = …")
 
 
@@ -116,9 +112,7 @@ def _in_words(error: Any) -> tuple[str, str]:
     rule = error.validator_value
     match error.validator:
         case "type":
-            wanted = " or ".join(
-                TYPES.get(kind, kind) for kind in ([rule] if isinstance(rule, str) else rule)
-            )
+            wanted = " or ".join(TYPES.get(kind, kind) for kind in ([rule] if isinstance(rule, str) else rule))
             return f"Expected {wanted}, found {shown}.", f"Give {wanted}."
         case "enum":
             names = [str(item) for item in rule]

@@ -64,11 +64,7 @@ def _value(value: Any) -> str:
             text = str(value).replace("E+", "e").replace("E", "e")
             return text if any(mark in text for mark in ".e") else f"{text}.0"
         case Mapping():
-            return (
-                "{ " + ", ".join(f"{_key(k)} = {_value(v)}" for k, v in value.items()) + " }"
-                if value
-                else "{}"
-            )
+            return "{ " + ", ".join(f"{_key(k)} = {_value(v)}" for k, v in value.items()) + " }" if value else "{}"
         case list() | tuple():
             return "[" + ", ".join(_value(entry) for entry in value) + "]"
         case _:

@@ -173,7 +173,7 @@ def sqrt(reading: Arithmetic, x: Series) -> Series:
 
 def real_power(reading: Arithmetic, x: Series, n: Fraction) -> Series:
     """Return a power that is neither whole nor half, or a huge one."""
-    result = [reading.head("power", x[0], order=n)]  # type: ignore[arg-type]
+    result = [reading.head("power", x[0], order=n)]
     if len(x) == 1:
         return result
     for k in range(1, reading.order + 1):

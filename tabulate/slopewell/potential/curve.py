@@ -84,9 +84,7 @@ class Curve:
     @cached_property
     def _ends(self) -> tuple[Array, Array]:
         """Ends of inner pieces that hold their own end, and of those that do not, widened by ``SNAP``."""
-        ends = {
-            closed: [float(p.end) for p in self.pieces[:-1] if p.closed == closed] for closed in (True, False)
-        }
+        ends = {closed: [float(p.end) for p in self.pieces[:-1] if p.closed == closed] for closed in (True, False)}
         return np.array(ends[True]) * (1 + SNAP), np.array(ends[False]) * (1 - SNAP)
 
     def _parts(self, r: Array) -> Iterator[tuple[Piece, slice | NDArray[np.intp]]]:

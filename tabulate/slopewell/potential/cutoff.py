@@ -76,14 +76,11 @@ def treat(curve: Curve, cutoff: Cutoff, end: Fraction) -> Curve:
         pieces = _switched(inside, cutoff)
     elif cutoff.treatment == "force-switch":
         assert cutoff.start is not None
-        pieces = switch_force(
-            inside, cutoff.start, cutoff.at, switch(cutoff.start, cutoff.at, cutoff.continuity)
-        )
+        pieces = switch_force(inside, cutoff.start, cutoff.at, switch(cutoff.start, cutoff.at, cutoff.continuity))
     else:
         rest = _remainder(inside[-1].tree, cutoff)
         pieces = [
-            Piece(p.start, p.end, simplify("+", (p.tree, rest)) if rest != ZERO else p.tree, p.closed)
-            for p in inside
+            Piece(p.start, p.end, simplify("+", (p.tree, rest)) if rest != ZERO else p.tree, p.closed) for p in inside
         ]
     if end > cutoff.at:
         last = pieces[-1]

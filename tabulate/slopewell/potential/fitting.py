@@ -99,9 +99,7 @@ class FitError(ValueError):
     """Parameters that the points do not determine."""
 
 
-def least_squares(
-    residuals: Callable[[Array], Array], starts: Sequence[Array], low: Array, high: Array
-) -> Solution:
+def least_squares(residuals: Callable[[Array], Array], starts: Sequence[Array], low: Array, high: Array) -> Solution:
     """Return the values that make the sum of squared residuals smallest.
 
     Parameters

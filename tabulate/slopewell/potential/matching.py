@@ -21,8 +21,7 @@ def matching(left: list[Fraction], right: list[Fraction], start: Fraction, end: 
     inverse = [Fraction((-1) ** k * comb(count + k - 1, k)) for k in range(count)]
     rest = [sum((missing[j] * inverse[k - j] for j in range(k + 1)), Fraction(0)) for k in range(count)]
     shifted = [
-        sum((comb(j, k) * (-1) ** (j - k) * rest[j] for j in range(k, count)), Fraction(0))
-        for k in range(count)
+        sum((comb(j, k) * (-1) ** (j - k) * rest[j] for j in range(k, count)), Fraction(0)) for k in range(count)
     ]
     u = multiply(number(1 / width), add(R, number(-start)))
     return polynomial([*here, *shifted], u)

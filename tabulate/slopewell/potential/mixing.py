@@ -32,9 +32,7 @@ class Rule:
     source: str
 
 
-def mixed(
-    rule: str, form: str, one: Mapping[str, Fraction], other: Mapping[str, Fraction]
-) -> dict[str, Fraction]:
+def mixed(rule: str, form: str, one: Mapping[str, Fraction], other: Mapping[str, Fraction]) -> dict[str, Fraction]:
     """Return the parameters of an unlike pair.
 
     Parameters
@@ -73,9 +71,7 @@ def _root(a: Ball, n: int) -> Ball:
     return (a.log() / n).exp()
 
 
-def _each(
-    energy: Callable[[Ball, Ball], Ball], size: Callable[[Ball, Ball], Ball], length: str = "sigma"
-) -> Mix:
+def _each(energy: Callable[[Ball, Ball], Ball], size: Callable[[Ball, Ball], Ball], length: str = "sigma") -> Mix:
     def mix(a: Values, b: Values) -> dict[str, Ball]:
         return {"epsilon": energy(a["epsilon"], b["epsilon"]), length: size(a[length], b[length])}
 
@@ -115,8 +111,7 @@ RULES = {
         Rule(
             "lorentz-berthelot",
             {"lennard-jones": _LORENTZ},
-            "H. A. Lorentz, Ann. Phys. (Leipzig) 248, 127 (1881); "
-            "D. Berthelot, C. R. Acad. Sci. 126, 1703 (1898)",
+            "H. A. Lorentz, Ann. Phys. (Leipzig) 248, 127 (1881); D. Berthelot, C. R. Acad. Sci. 126, 1703 (1898)",
         ),
         Rule(
             "geometric",

@@ -36,6 +36,8 @@ class Points:
         Standard errors of the energies; empty where they are not known.
     weight : tuple of float
         Weights for a fit; empty where none are given.
+    file, sha256 : str
+        Where they were read from.
     """
 
     separation: tuple[Fraction, ...]
@@ -43,6 +45,8 @@ class Points:
     slope: tuple[Fraction, ...] = ()
     error: tuple[float, ...] = ()
     weight: tuple[float, ...] = ()
+    file: str = ""
+    sha256: str = ""
 
     def arrays(self) -> tuple[Array, Array]:
         """Return separations and energies as arrays."""
@@ -139,11 +143,7 @@ def _smoothing(x: Array, y: Array, points: Points) -> list[Array]:
 
     rough, smooth = np.log10(ROUGHEST), np.log10(SMOOTHEST)
     exponent = (
-        smooth
-        if excess(smooth) < 0
-        else rough
-        if excess(rough) > 0
-        else brentq(excess, rough, smooth, xtol=1e-6)
+        smooth if excess(smooth) < 0 else rough if excess(rough) > 0 else brentq(excess, rough, smooth, xtol=1e-6)
     )
     made = make_smoothing_spline(x, y, weight, lam=unit * 10**exponent)
     return [made(x), made(x, 1)]
@@ -187,9 +187,7 @@ def _ends(curve: Curve, at: Fraction) -> tuple[Fraction, Fraction]:
 def _wall(curve: Curve, first: Fraction) -> Tree:
     energy, slope = _ends(curve, first)
     if energy <= 0 or slope >= 0:
-        says = (
-            "the grid starts before the first point, whose energy is not that of a wall, positive and falling"
-        )
+        says = "the grid starts before the first point, whose energy is not that of a wall, positive and falling"
         raise SplineError(says, "Add points further in, or start the grid at the first one.")
     distance = add(R, number(-first))
     return multiply(number(energy), Apply("exp", (multiply(number(slope / energy), distance),)))
@@ -198,11 +196,7 @@ def _wall(curve: Curve, first: Fraction) -> Tree:
 def _tail(curve: Curve, last: Fraction) -> Tree:
     energy, slope = _ends(curve, last)
     if energy * slope >= 0:
-        says = (
-            "beyond the last point no inverse power can follow: energy and slope there do not vanish together"
-        )
-        raise SplineError(
-            says, 'Add points further out, end the grid at the last one, or write beyond = "zero".'
-        )
+        says = "beyond the last point no inverse power can follow: energy and slope there do not vanish together"
+        raise SplineError(says, 'Add points further out, end the grid at the last one, or write beyond = "zero".')
     power = _exact(float(-slope * last / energy))
     return multiply(number(energy), Apply("^", (multiply(number(1 / last), R), number(-power))))

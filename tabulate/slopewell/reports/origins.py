@@ -39,6 +39,8 @@ def _pair(document: Document, interaction: Interaction) -> dict[str, Any]:
     record: dict[str, Any] = {"interaction": potential.name, "origin": origin.kind}
     if origin.rule:
         record |= {"rule": origin.rule, "form": origin.form, "parameters": _plain(origin.parameters)}
+    if potential.splines:
+        record["points"] = [{"file": p.file, "sha256": p.sha256} for p, _ in potential.splines]
     if interaction.fits:
         record["fits"] = [fit_record(fit, document.units) for fit in interaction.fits]
     if document.number_density is not None and potential.between[0] == potential.between[1]:
@@ -60,9 +62,7 @@ def fit_record(fit: Fit, units: UnitSystem) -> dict[str, Any]:
         "points": fit.points,
         "weight": fit.weight,
         "temperature": fit.temperature,
-        "parameters": {
-            p.name: {"value": p.value, "standard_error": p.error, "unit": p.unit} for p in fit.parameters
-        },
+        "parameters": {p.name: {"value": p.value, "standard_error": p.error, "unit": p.unit} for p in fit.parameters},
         "correlations": [list(row) for row in fit.correlations],
         "residual": {
             "root_mean_square": fit.root_mean_square / energy,
@@ -106,9 +106,7 @@ def pair_lines(record: dict[str, Any], units: UnitSystem) -> list[tuple[str, str
     if record.get("tail"):
         found = record["tail"]
         said = f"{found['energy']:.6g} {units.energy.text} a particle, {found['pressure_MPa']:.6g} MPa"
-        lines.append(
-            ("beyond the cutoff", f"{said}, at {found['number_density']:.6g} {units.length.text}^-3")
-        )
+        lines.append(("beyond the cutoff", f"{said}, at {found['number_density']:.6g} {units.length.text}^-3"))
     return lines
 
 
@@ -117,9 +115,7 @@ def fit_lines(fit: dict[str, Any], units: UnitSystem) -> list[tuple[str, str]]:
     weight = WEIGHTS[fit["weight"]] + (f" at {fit['temperature']:g} K" if fit["temperature"] else "")
     lines = [("fitted to", f"{fit['points']} points of {fit['to']}, {weight}")]
     for name, found in fit["parameters"].items():
-        lines.append(
-            (f"  {name}", f"{found['value']:.8g} ± {found['standard_error']:.2g} {found['unit']}".rstrip())
-        )
+        lines.append((f"  {name}", f"{found['value']:.8g} ± {found['standard_error']:.2g} {found['unit']}".rstrip()))
     names = list(fit["parameters"])
     pairs = [(abs(fit["correlations"][i][j]), i, j) for i in range(len(names)) for j in range(i)]
     if pairs:
@@ -132,9 +128,7 @@ def fit_lines(fit: dict[str, Any], units: UnitSystem) -> list[tuple[str, str]]:
         )
     residual = fit["residual"]
     largest = f"largest {residual['largest']:.3g} at {residual['at']:.4g} {units.length.text}"
-    lines.append(
-        ("  residual", f"{residual['root_mean_square']:.3g} {units.energy.text} root mean square, {largest}")
-    )
+    lines.append(("  residual", f"{residual['root_mean_square']:.3g} {units.energy.text} root mean square, {largest}"))
     return lines
 
 

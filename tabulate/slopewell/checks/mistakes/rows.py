@@ -77,34 +77,34 @@ class _Halves:
 
     def best(self, offsets: list[int], chosen: NDArray[np.intp], count: int) -> list[int]:
         """Return the offsets, in half rows, that leave the fewest of some wrong rows wrong."""
-        scored = [
-            (score, abs(twice), twice)
-            for twice in offsets
-            if (score := self._score(twice, chosen)) is not None
-        ]
-        return [twice for _, _, twice in sorted(scored)[:count]]
+        scored: list[tuple[float, int, int]] = []
+        for part in ([n for n in offsets if n % 2 == 0], [n for n in offsets if n % 2]):
+            if part:
+                scores = self._scores(np.array(part), chosen)
+                scored += [(score, abs(n), n) for score, n in zip(scores.tolist(), part, strict=True)]
+        return [n for score, _, n in sorted(scored)[:count] if score < 1]
 
-    def _score(self, twice: int, chosen: NDArray[np.intp]) -> float | None:
-        """Return the part of wrong rows that an offset leaves wrong; None where it says too little."""
-        best: float | None = None
-        for predicted, band in self.predictions(twice, chosen):
+    def _scores(self, offsets: NDArray[np.intp], chosen: NDArray[np.intp]) -> Array:
+        """Return the part of wrong rows that each offset leaves wrong; 1 where it says too little."""
+        scores = np.ones(offsets.size)
+        for predicted, band in self._at(offsets[:, None], chosen[None, :]):
             told = np.isfinite(band)
-            if np.count_nonzero(told) < 0.5 * chosen.size:
-                continue
-            misses = distance(self.evidence.force[chosen], predicted, band) > 1
-            left = float(np.mean(misses[told]))
-            best = left if best is None else min(best, left)
-        return best
+            enough = np.count_nonzero(told, axis=1) >= 0.5 * chosen.size
+            misses = (distance(self.evidence.force[chosen][None, :], predicted, band) > 1) & told
+            left = np.count_nonzero(misses, axis=1) / np.maximum(np.count_nonzero(told, axis=1), 1)
+            scores = np.where(enough, np.minimum(scores, left), scores)
+        return scores
 
-    def predictions(
-        self, twice: int, chosen: NDArray[np.intp] | None = None
-    ) -> Iterator[tuple[Array, Array]]:
+    def predictions(self, twice: int) -> Iterator[tuple[Array, Array]]:
         """Yield the forces that an offset of so many half rows predicts, and their bands."""
+        yield from self._at(np.array(twice), np.arange(self.evidence.force.size))
+
+    def _at(self, twice: NDArray[np.intp], rows: NDArray[np.intp]) -> Iterator[tuple[Array, Array]]:
+        """Yield predictions for offsets that are all whole or all half, in the shape of both together."""
         evidence = self.evidence
-        rows = np.arange(evidence.force.size) if chosen is None else chosen
-        sources = [(evidence.expected, evidence.band)] if twice % 2 == 0 else self.middles
+        whole = [(evidence.expected, evidence.band)]
         index = rows + twice // 2
-        for values, band in sources:
+        for values, band in whole if int(twice.flat[0]) % 2 == 0 else self.middles:
             inside = (index >= 0) & (index < values.size)
             safe = np.clip(index, 0, values.size - 1)
             width = np.where(inside, band[safe] + evidence.rounding[rows], np.inf)

@@ -9,7 +9,7 @@ from numpy.typing import NDArray
 
 Array = NDArray[np.float64]
 
-SAMPLE = 400
+SAMPLE = 150
 """Numbers looked at: enough that some end in no zero."""
 RARE = 0.02
 """Part of the numbers that may carry more digits than the column does: corrupted rows among good ones."""

@@ -18,9 +18,7 @@ from slopewell.problems import UnusableInput
 DATA = parse_source(DOCUMENT, "pair.toml", "").data
 COLUMNS = tuple(find_column(title, DATA) for title in ("A-A.epsilon", "A-A.sigma", "temperature"))
 LEAVES = st.text() | st.booleans() | st.integers() | st.decimals(allow_nan=False, allow_infinity=False)
-VALUES = st.recursive(
-    LEAVES, lambda inner: st.lists(inner, max_size=3) | st.dictionaries(st.text(), inner, max_size=3)
-)
+VALUES = st.recursive(LEAVES, lambda inner: st.lists(inner, max_size=3) | st.dictionaries(st.text(), inner, max_size=3))
 
 
 def test_values_take_the_unit_of_their_column_and_leave_the_document_alone() -> None:

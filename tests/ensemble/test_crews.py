@@ -54,9 +54,7 @@ def test_a_set_that_kills_its_process_stops_no_other(monkeypatch: pytest.MonkeyP
     ("address", "says"),
     [("nowhere", "is no address"), ("tcp://127.0.0.1:9", "No Dask scheduler answers")],
 )
-def test_a_scheduler_that_is_not_there_is_said(
-    address: str, says: str, monkeypatch: pytest.MonkeyPatch
-) -> None:
+def test_a_scheduler_that_is_not_there_is_said(address: str, says: str, monkeypatch: pytest.MonkeyPatch) -> None:
     pytest.importorskip("distributed")
     monkeypatch.setattr(crews, "PATIENCE", "0.2s")
     with pytest.raises(UnusableInput, match=says):

@@ -34,17 +34,15 @@ def test_sets_without_names_are_numbered(tmp_path: Path) -> None:
         ("", "line 1", "The header names no parameter."),
         ("set\na\n", "line 1", "The header names no parameter."),
         ("set,A-A.x\n", "line 1, column 2", 'The document states no value "A-A.x".'),
-        ("A-A.sigma,A-A.sigma [nm]\n", "line 1, column 2", "[nm] can't be the unit of A-A.sigma"),
-        ("A-A.sigma,A-A.sigma\n", "line 1", "Two columns stand for one value."),
+        ("A-A.sigma,temperature [nm]\n", "line 1, column 2", "[nm] can't be the unit of temperature"),
+        ("A-A.sigma,A-A.sigma [nm]\n", "line 1", "Two columns stand for one value."),
         ("set,A-A.sigma\na,3\nA,4\n", "line 3", 'The set "A" stands on line 2 already.'),
         ("set,A-A.sigma\n../a,3\n", "line 2", '"../a" can\'t be the name of a set.'),
         ("set,A-A.sigma\n,3\n", "line 2", '"" can\'t be the name of a set.'),
         ('A-A.sigma\n3\n"4\n', "line 3", "This is not valid CSV"),
     ],
 )
-def test_what_is_wrong_with_a_file_is_said_with_its_place(
-    text: str, at: str, says: str, tmp_path: Path
-) -> None:
+def test_what_is_wrong_with_a_file_is_said_with_its_place(text: str, at: str, says: str, tmp_path: Path) -> None:
     with pytest.raises(UnusableInput) as error:
         read(tmp_path, text)
     assert error.value.problems[0].at == at

@@ -31,7 +31,7 @@ def start(folder: Path, into: str, workers: int) -> subprocess.Popen[str]:
 
 
 def finished(folder: Path) -> int:
-    return sum(1 for _ in folder.rglob("set.json"))
+    return sum(not path.parent.name.startswith(".") for path in folder.rglob("set.json"))
 
 
 @pytest.mark.parametrize(("into", "workers"), [("out", 1), ("out/all.h5", 2)])

@@ -55,9 +55,7 @@ def checks() -> str:
     parts = []
     for subject, listed in registers().items():
         rows = [f"| `{check.name}` | {check.title}. |" for check in listed]
-        parts.append(
-            "\n".join([f"| check of a {subject} | what holds where it finds nothing |", "|---|---|", *rows])
-        )
+        parts.append("\n".join([f"| check of a {subject} | what holds where it finds nothing |", "|---|---|", *rows]))
     return "\n\n".join(parts)
 
 
@@ -87,9 +85,7 @@ def _fields(part: dict[str, Any], path: str, root: dict[str, Any]) -> Iterator[F
     for key, given in part.get("properties", {}).items():
         if given is not False:
             inner = _resolved(given, root)
-            yield from _field(
-                inner, f"{path}.{key}" if path else key, key in needed and _word(key, part), root
-            )
+            yield from _field(inner, f"{path}.{key}" if path else key, key in needed and _word(key, part), root)
     if isinstance(part.get("additionalProperties"), dict):
         inner = _resolved(part["additionalProperties"], root)
         yield from _field(inner, f"{path}.NAME" if path else "NAME", "", root)
@@ -104,12 +100,7 @@ def _field(part: dict[str, Any], path: str, needed: str | bool, root: dict[str, 
 
 
 def _one_of(part: dict[str, Any]) -> set[str]:
-    return {
-        key
-        for rule in ("oneOf", "anyOf")
-        for choice in part.get(rule, ())
-        for key in choice.get("required", ())
-    }
+    return {key for rule in ("oneOf", "anyOf") for choice in part.get(rule, ()) for key in choice.get("required", ())}
 
 
 def _word(key: str, part: dict[str, Any]) -> str:
@@ -144,9 +135,7 @@ def schema_tables() -> str:
     parts = []
     for name in NAMES:
         known = schema(name)
-        rows = [
-            f"| `{f.path}` | {f.takes} | {f.needed} | {f.meaning.replace('|', '/')} |" for f in fields(name)
-        ]
+        rows = [f"| `{f.path}` | {f.takes} | {f.needed} | {f.meaning.replace('|', '/')} |" for f in fields(name)]
         head = [f"## {known['title']}", "", f"`slopewell schema {name}`: {known['description']}", ""]
         parts.append("\n".join([*head, "| field | takes | needed | meaning |", "|---|---|---|---|", *rows]))
     return "\n\n".join(parts)

@@ -24,10 +24,7 @@ CERTIFICATES = st.dictionaries(
 def any_rows(draw: Any, name: str) -> Rows:
     """Rows with any numbers that a double holds."""
     separation = draw(SEPARATIONS)
-    columns = [
-        np.array(draw(st.lists(NUMBERS, min_size=len(separation), max_size=len(separation))))
-        for _ in range(3)
-    ]
+    columns = [np.array(draw(st.lists(NUMBERS, min_size=len(separation), max_size=len(separation)))) for _ in range(3)]
     kept = draw(st.sampled_from([(0,), (1,), (0, 1), (0, 1, 2)]))
     energy, force, curvature = (columns[k] if k in kept else None for k in range(3))
     return Rows(

@@ -156,9 +156,7 @@ def test_bad_input_gets_one_clear_message(
 
 @pytest.mark.parametrize("faulty", sorted(FAULTY.glob("*.toml")), ids=lambda path: path.stem)
 def test_accepting_everything_never_ends_in_a_traceback(faulty: Path, tmp_path: Path) -> None:
-    names = [
-        line.split("`")[1] for line in (ROOT / "README.md").read_text().splitlines() if line.startswith("| `")
-    ]
+    names = [line.split("`")[1] for line in (ROOT / "README.md").read_text().splitlines() if line.startswith("| `")]
     known = {
         "finite",
         "force-matches-slope",

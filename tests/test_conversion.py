@@ -87,9 +87,7 @@ def test_tolerance_chooses_rows_that_keep_it() -> None:
 def test_a_missing_column_is_derived_and_marked(missing: str) -> None:
     r = np.linspace(1.0, 3.0, 400)
     whole = {"energy": (3 - r) ** 3, "force": 3 * (3 - r) ** 2}
-    new, _ = changed(
-        table(r, *(None if name == missing else whole[name] for name in whole)), Changes(complete=True)
-    )
+    new, _ = changed(table(r, *(None if name == missing else whole[name] for name in whole)), Changes(complete=True))
     (rows,) = new.interactions
     derived = rows.column(missing)
 
@@ -111,9 +109,7 @@ def test_provenance_says_what_was_done_to_which_file(old: Path, tmp_path: Path) 
     ("extra", "status"),
     [([], 1), (["--accept", "force-matches-slope"], 0), (["--mend", "force-sign-flipped"], 0)],
 )
-def test_an_error_must_be_mended_or_accepted(
-    old: Path, tmp_path: Path, extra: list[str], status: int
-) -> None:
+def test_an_error_must_be_mended_or_accepted(old: Path, tmp_path: Path, extra: list[str], status: int) -> None:
     new = tmp_path / "new.h5"
     call = [
         "convert",

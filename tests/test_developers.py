@@ -93,8 +93,6 @@ def test_a_check_and_a_format_are_added_by_one_file_and_one_line(extended: Path)
     assert (extended / "beads.show").read_text(encoding="utf-8").startswith('{\n "schema"')
 
 
-@pytest.mark.parametrize(
-    "name", sorted(set(re.findall(r"`((?:\.?[a-z_]+/)+(?:[A-Za-z_.]+)?|[a-z]+\.py)`", TEXT)))
-)
+@pytest.mark.parametrize("name", sorted(set(re.findall(r"`((?:\.?[a-z_]+/)+(?:[A-Za-z_.]+)?|[a-z]+\.py)`", TEXT))))
 def test_everything_that_is_named_exists(name: str) -> None:
     assert (ROOT / name).exists() or (PACKAGE / name).exists()

@@ -23,9 +23,7 @@ OUTPUTS = "".join(f'[[output]]\nfile = "pair.{ending}"\n' for ending in ("h5", "
 
 
 def run(*arguments: str, folder: Path, **options: object) -> subprocess.CompletedProcess[str]:
-    return subprocess.run(
-        [*SLOPEWELL, *arguments], cwd=folder, capture_output=True, text=True, check=False, **options
-    )
+    return subprocess.run([*SLOPEWELL, *arguments], cwd=folder, capture_output=True, text=True, check=False, **options)
 
 
 def test_the_command_of_the_readme_writes_every_output(tmp_path: Path) -> None:
@@ -46,26 +44,20 @@ def test_the_command_of_the_readme_writes_every_output(tmp_path: Path) -> None:
 
 def test_the_script_that_is_installed_is_the_same_program(tmp_path: Path) -> None:
     script = Path(sys.executable).with_name("slopewell")
-    shown = subprocess.run(
-        [str(script), "--version"], cwd=tmp_path, capture_output=True, text=True, check=True
-    )
+    shown = subprocess.run([str(script), "--version"], cwd=tmp_path, capture_output=True, text=True, check=True)
     assert shown.stdout == run("--version", folder=tmp_path).stdout
 
 
 def test_a_reader_that_goes_away_is_no_error(tmp_path: Path) -> None:
     (tmp_path / "pair.toml").write_text(text())
     command = f"{shlex.join([*SLOPEWELL, 'forms'])} | head -1"
-    done = subprocess.run(
-        ["bash", "-o", "pipefail", "-c", command], capture_output=True, text=True, check=False
-    )
+    done = subprocess.run(["bash", "-o", "pipefail", "-c", command], capture_output=True, text=True, check=False)
     assert (done.returncode, done.stderr) == (0, "")
 
 
 def test_a_terminal_that_knows_no_unicode_gets_no_traceback(tmp_path: Path) -> None:
     (tmp_path / "pair.toml").write_text(text(cutoff='cutoff = { at = 9, treatment = "truncate" }\n'))
-    done = run(
-        "check", "pair.toml", folder=tmp_path, env={"PYTHONIOENCODING": "ascii", "PATH": "/usr/bin:/bin"}
-    )
+    done = run("check", "pair.toml", folder=tmp_path, env={"PYTHONIOENCODING": "ascii", "PATH": "/usr/bin:/bin"})
     assert done.returncode == 1
     assert "Traceback" not in done.stderr
 
@@ -73,9 +65,7 @@ def test_a_terminal_that_knows_no_unicode_gets_no_traceback(tmp_path: Path) -> N
 def test_an_interruption_says_so_and_leaves_nothing(tmp_path: Path) -> None:
     import signal
 
-    (tmp_path / "pair.toml").write_text(
-        text(grid="[grid]\nfrom = 2.5\nto = 9\nrows = 400001\n", outputs=OUTPUTS)
-    )
+    (tmp_path / "pair.toml").write_text(text(grid="[grid]\nfrom = 2.5\nto = 9\nrows = 400001\n", outputs=OUTPUTS))
     process = subprocess.Popen(
         [*SLOPEWELL, "tabulate", "pair.toml", "--into", "out"], cwd=tmp_path, stderr=subprocess.PIPE
     )
@@ -96,9 +86,7 @@ def whole(path: Path) -> str:
             return str(file.attrs["title"])
     lines = path.read_text(encoding="utf-8").splitlines()
     assert len(lines) == 3002
-    return str(
-        json.loads(path.with_name(f"{path.name}-metadata.json").read_text(encoding="utf-8"))["dc:title"]
-    )
+    return str(json.loads(path.with_name(f"{path.name}-metadata.json").read_text(encoding="utf-8"))["dc:title"])
 
 
 def test_killing_it_at_any_moment_leaves_the_old_files_or_the_new_ones(tmp_path: Path) -> None:

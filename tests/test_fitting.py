@@ -24,9 +24,7 @@ def test_the_new_document_means_the_fitted_curve(tmp_path: Path) -> None:
     written = read_document(tmp_path / "fitted.toml")
     r = np.linspace(3.0, 10.0, 50)
     for old, new in zip(document.interactions, written.interactions, strict=True):
-        assert new.potential.bare.derivatives(r, 1) == pytest.approx(
-            old.potential.bare.derivatives(r, 1), rel=1e-12
-        )
+        assert new.potential.bare.derivatives(r, 1) == pytest.approx(old.potential.bare.derivatives(r, 1), rel=1e-12)
         assert new.fits == ()
     assert [name for name, _ in fits] == ["H-H"]
 

@@ -108,9 +108,7 @@ def test_a_table_with_its_document_inside_gives_the_same(record: dict[str, Any],
 
 
 def test_json_on_standard_output(tmp_path: Path, capsys: pytest.CaptureFixture[str]) -> None:
-    status = main(
-        ["predict", str(document(tmp_path)), "--json", "--structure", "sc", "--temperatures", "300"]
-    )
+    status = main(["predict", str(document(tmp_path)), "--json", "--structure", "sc", "--temperatures", "300"])
     found = json.loads(capsys.readouterr().out)
     assert status == 0
     assert rows_of(found, "second-virial", temperature=300.0)

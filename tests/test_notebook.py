@@ -37,9 +37,7 @@ def test_a_potential_shows_its_curve(document: Document) -> None:
 
 def test_a_table_shows_its_rows(document: Document) -> None:
     interaction = document.interactions[0]
-    table = Table(
-        (tabulate_rows(interaction.potential, interaction.grid, 50, document.units),), document.units
-    )
+    table = Table((tabulate_rows(interaction.potential, interaction.grid, 50, document.units),), document.units)
     assert "Drawn from 50 rows" in framed(table._repr_html_())
     assert isinstance(table.plot(), Figure)
 

@@ -24,9 +24,7 @@ def test_every_spacing_is_planned_with_every_rule(tmp_path: Path, capsys: pytest
     path = written(tmp_path, documents.text())
     assert main(["plan", str(path), "--tolerance", "1e-6 eV", "--json"]) == 0
     plans = json.loads(capsys.readouterr().out)["plans"]
-    assert [(p["spacing"], p["interpolation"]) for p in plans] == [
-        (s, i) for s in SPACINGS for i in INTERPOLATIONS
-    ]
+    assert [(p["spacing"], p["interpolation"]) for p in plans] == [(s, i) for s in SPACINGS for i in INTERPOLATIONS]
     assert all(p["interaction"] == "A-A" and p["proved"] and p["energy_error_bound"] <= 1e-6 for p in plans)
 
 
@@ -39,9 +37,7 @@ def test_tabulate_writes_the_rows_that_plan_gives(tmp_path: Path) -> None:
     assert len(csv.read_text(encoding="utf-8").splitlines()) == 1 + (wanted.rows or 0)
 
 
-def test_the_table_for_people_names_rows_and_errors(
-    tmp_path: Path, capsys: pytest.CaptureFixture[str]
-) -> None:
+def test_the_table_for_people_names_rows_and_errors(tmp_path: Path, capsys: pytest.CaptureFixture[str]) -> None:
     path = written(tmp_path, documents.text())
     assert main(["plan", str(path), "--tolerance", "1e-4 eV"]) == 0
     lines = capsys.readouterr().out.splitlines()

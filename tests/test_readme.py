@@ -29,17 +29,15 @@ def test_the_output_of_units_is_real(capsys: pytest.CaptureFixture[str]) -> None
 
 def test_the_example_document_can_be_used() -> None:
     (text,) = re.findall(r"```toml\n(.*?)```", README, re.DOTALL)
-    document = understand(
-        Source("README.md", text, hashlib.sha256(text.encode()).hexdigest(), tomllib.loads(text), {})
-    )
+    document = understand(Source("README.md", text, hashlib.sha256(text.encode()).hexdigest(), tomllib.loads(text), {}))
     assert [interaction.potential.name for interaction in document.interactions] == ["W-W", "W-P"]
 
 
 def test_every_command_that_is_named_exists() -> None:
     (commands,) = (action.choices for action in parser()._actions if action.choices)
-    assert set(
-        re.findall(r"slopewell ([a-z]+)\b(?! package)", "\n".join(re.findall(r"`[^`]+`", README)))
-    ) <= set(commands)
+    assert set(re.findall(r"slopewell ([a-z]+)\b(?! package)", "\n".join(re.findall(r"`[^`]+`", README)))) <= set(
+        commands
+    )
 
 
 @pytest.mark.parametrize("link", re.findall(r"\]\(([^)#]+)\)", README))

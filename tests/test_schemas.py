@@ -41,6 +41,4 @@ def test_fields_are_found_at_every_depth() -> None:
         return found.union(*map(keys, part.values()))
 
     for name in NAMES:
-        assert keys(schema(name)) <= {
-            part for f in fields(name) for part in f.path.replace("[]", "").split(".")
-        }
+        assert keys(schema(name)) <= {part for f in fields(name) for part in f.path.replace("[]", "").split(".")}

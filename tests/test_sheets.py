@@ -118,9 +118,7 @@ def test_what_can_not_be_done_is_said(
 
 def test_files_without_a_common_pair_are_not_compared(pair: Path) -> None:
     other = pair.with_name("other.toml")
-    other.write_text(
-        ARGON_LIKE.replace('"A", "A"', '"B", "B"').replace("species.A", "species.B"), encoding="utf-8"
-    )
+    other.write_text(ARGON_LIKE.replace('"A", "A"', '"B", "B"').replace("species.A", "species.B"), encoding="utf-8")
     # Two files of one interaction each are compared whatever it is called; here the second has two.
     with other.open("a", encoding="utf-8") as file:
         file.write('[species.C]\n[[interaction]]\nbetween = ["B", "C"]\nform = "lennard-jones"\n')

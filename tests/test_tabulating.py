@@ -75,9 +75,7 @@ def test_each_file_has_the_same_numbers_in_its_own_units(tmp_path: Path) -> None
         factor = float(table.units.energy.factor)
         near = np.abs(first.energy) + 1e-4
         assert np.all(np.abs(rows.energy * factor - first.energy) <= 1e-13 * near)
-        assert rows.separation * float(table.units.length.factor) == pytest.approx(
-            first.separation, rel=1e-15
-        )
+        assert rows.separation * float(table.units.length.factor) == pytest.approx(first.separation, rel=1e-15)
 
 
 def test_two_writes_of_one_document_are_the_same_bytes(tmp_path: Path) -> None:

@@ -37,9 +37,7 @@ interpolation = "{rule}"
 SHORT = {"steps": 60, "seeds": 1, "particles": 128}
 
 
-def document(
-    folder: Path, rows: int = 2001, rule: str = "cubic-hermite", species: str = "", more: str = ""
-) -> Path:
+def document(folder: Path, rows: int = 2001, rule: str = "cubic-hermite", species: str = "", more: str = "") -> Path:
     path = folder / "beads.toml"
     path.write_text(DOCUMENT.format(rows=rows, rule=rule, species=species, more=more), encoding="utf-8")
     return path
@@ -64,9 +62,7 @@ def test_json_of_a_coarse_table(tmp_path: Path, capsys: pytest.CaptureFixture[st
     assert record["verdict"] == "fail"
 
 
-def test_a_text_table_with_a_sign_error_and_no_document(
-    tmp_path: Path, capsys: pytest.CaptureFixture[str]
-) -> None:
+def test_a_text_table_with_a_sign_error_and_no_document(tmp_path: Path, capsys: pytest.CaptureFixture[str]) -> None:
     r = np.linspace(2.6, 7.0, 800)
     energy = 0.0414 * ((3.4 / r) ** 12 - (3.4 / r) ** 6) * ((7 - r) / 4) ** 3
     force = -np.gradient(energy, r, edge_order=2)

@@ -45,9 +45,7 @@ def test_an_unusable_file_does_not_stop_the_others(tmp_path: Path) -> None:
 
 
 def test_one_cause_gives_one_failure(tmp_path: Path) -> None:
-    found = subject(
-        text('energy = "e*sqrt(r/s - 1)"\nparameters = { e = "1 eV", s = "4 angstrom" }\n'), tmp_path
-    )
+    found = subject(text('energy = "e*sqrt(r/s - 1)"\nparameters = { e = "1 eV", s = "4 angstrom" }\n'), tmp_path)
     assert {finding.check for finding in found.findings} == {"finite"}
     assert found.checked == ("finite",)
 

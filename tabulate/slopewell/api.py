@@ -49,10 +49,7 @@ def make_table(
     UnusableInput
         If the arrays differ in length, or energy and force are both missing.
     """
-    columns = [
-        None if column is None else np.array(column, dtype=np.float64)
-        for column in (separation, energy, force)
-    ]
+    columns = [None if column is None else np.array(column, dtype=np.float64) for column in (separation, energy, force)]
     lengths = {column.shape for column in columns if column is not None}
     if len(lengths) != 1 or any(len(shape) != 1 for shape in lengths):
         raise UnusableInput([Problem("", "The columns differ in length.", "Give arrays of one length.")])

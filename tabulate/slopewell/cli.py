@@ -119,9 +119,7 @@ def _tabulate(options: argparse.Namespace) -> int:
     for name in ("workers", "scheduler"):
         if getattr(options, name):
             raise UnusableInput([Problem(f"--{name}", "This is for sets.", "Add --parameters SETS.")])
-    done = tabulate(
-        options.document, into=options.into, accept=options.accept, strict=options.strict, track=_track
-    )
+    done = tabulate(options.document, into=options.into, accept=options.accept, strict=options.strict, track=_track)
     _print_report(done.report, as_json=False)
     console = _console()
     console.print()
@@ -245,7 +243,9 @@ def _sheet_options(command: argparse.ArgumentParser) -> None:
 def _sheet(options: argparse.Namespace) -> int:
     from .sheets import sheet
 
-    path, shown = sheet(options.files, options.output, only=options.interaction, reading=foreign_reading(options), track=_track)
+    path, shown = sheet(
+        options.files, options.output, only=options.interaction, reading=foreign_reading(options), track=_track
+    )
     print(f"wrote {path}")
     failing = {"fail", "warn"} if options.strict else {"fail"}
     return FOUND if shown.record.get("verdict") in failing else GOOD

@@ -69,12 +69,8 @@ class Difference:
             "energy": {"largest": self.energy[0], "at": self.energy[1]},
             "force": None if self.force is None else {"largest": self.force[0], "at": self.force[1]},
             "relative": self.relative,
-            "explained_by": None
-            if found is None
-            else {"name": found.name, "factor": found.factor, "says": found.says},
-            "landmarks": {
-                name: {"first": one, "second": other} for name, (one, other) in self.landmarks.items()
-            },
+            "explained_by": None if found is None else {"name": found.name, "factor": found.factor, "says": found.says},
+            "landmarks": {name: {"first": one, "second": other} for name, (one, other) in self.landmarks.items()},
         }
 
 
@@ -200,9 +196,7 @@ def _document_side(source: str | Path, units: UnitSystem | None) -> _Side:
     readers: dict[str, Reader] = {}
     for interaction in document.interactions:
         potential = interaction.potential
-        rows[potential.name] = tabulate_rows(
-            potential, interaction.grid, interaction.grid.rows or ROWS, chosen
-        )
+        rows[potential.name] = tabulate_rows(potential, interaction.grid, interaction.grid.rows or ROWS, chosen)
 
         def exact(r: Array, treated: Any = potential.treated) -> tuple[Array, Array]:
             energy, slope = evaluate(treated, r, 1, chosen)
@@ -235,9 +229,7 @@ def _difference(one: _Side, other: _Side, mine: str, theirs: str, tolerance: flo
     relative = energy[0] / scale
     found = None
     if relative > tolerance:
-        found = explain(
-            r, energies, others, first, second, other.reader(theirs), one.units, scale * tolerance
-        )
+        found = explain(r, energies, others, first, second, other.reader(theirs), one.units, scale * tolerance)
     return Difference(
         interaction=mine,
         energy=energy,

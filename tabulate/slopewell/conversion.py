@@ -257,9 +257,7 @@ def mended(loaded: Loaded, name: str) -> Loaded:
         rows.append(replace(new, curvature=None, derived=derived, certificate={}))
         says.append(f"mended {name} in {old.name}: {columns.says}")
     if not says:
-        shown = (
-            f"The checks find {', '.join(sorted(seen))}." if seen else "The checks find no mistake to mend."
-        )
+        shown = f"The checks find {', '.join(sorted(seen))}." if seen else "The checks find no mistake to mend."
         raise UnusableInput([Problem("--mend", f"No interaction shows {name}.", shown)])
     table = replace(loaded.table, interactions=tuple(rows), history=(*loaded.table.history, *says))
     stored = {} if name in ("columns-exchanged", "rows-offset") else loaded.stored
@@ -298,9 +296,7 @@ def _target(table: Table, path: Path, layout_file: str) -> Target:
 def _known_accepted(names: Iterable[str]) -> None:
     known = [check.name for check in TABLE_CHECKS]
     problems = [
-        Problem("--accept", f'There is no check "{name}".', nearest(name, known))
-        for name in names
-        if name not in known
+        Problem("--accept", f'There is no check "{name}".', nearest(name, known)) for name in names if name not in known
     ]
     if problems:
         raise UnusableInput(problems)

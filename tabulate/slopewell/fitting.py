@@ -68,9 +68,7 @@ def _fill(place: dict[str, Any], fit: Fit, document: Document) -> None:
         number = Decimal(repr(one.value))
         parameters[one.name] = f"{number} {one.unit}" if one.unit else number
     record = fit_record(fit, document.units)
-    errors = {
-        p.name: f"{p.error:.3g} {p.unit}" if p.unit else Decimal(f"{p.error:.3g}") for p in fit.parameters
-    }
+    errors = {p.name: f"{p.error:.3g} {p.unit}" if p.unit else Decimal(f"{p.error:.3g}") for p in fit.parameters}
     del place["fit"]
     place["fitted"] = {
         "to": fit.file,

@@ -131,9 +131,7 @@ def plans_of(interaction: Interaction, units: UnitSystem, tolerance: Fraction) -
     bounds = ErrorBounds(interaction.potential.treated, interaction.grid)
     for spacing in SPACINGS:
         for interpolation in INTERPOLATIONS:
-            yield _plan(
-                interaction.potential.name, interaction.grid, bounds, spacing, interpolation, units, tolerance
-            )
+            yield _plan(interaction.potential.name, interaction.grid, bounds, spacing, interpolation, units, tolerance)
 
 
 def _plan(

@@ -73,9 +73,7 @@ def _within(rows: Rows, tolerance: float, spacing: str, unit: Unit) -> tuple[Row
     while best[1][0] > tolerance:
         if high >= MOST:
             says = f"Even {MOST} rows add an error of {best[1][0]:.3g}."
-            raise UnusableInput(
-                [Problem("--tolerance", says, "Allow more; does the table have a step inside?")]
-            )
+            raise UnusableInput([Problem("--tolerance", says, "Allow more; does the table have a step inside?")])
         high = min(2 * high, MOST)
         best = tried(high)
     low = high // 2

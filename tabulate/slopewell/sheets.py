@@ -114,9 +114,7 @@ def document_sheet(document: Document, *, track: Track = silently) -> Sheet:
     record = subject.record()
     certified = {entry["interaction"] for entry in subject.certificates} if len(every) <= FEW else set()
     drawings = tuple(
-        replace(drawing, error=error_along(known, drawing.view.separation[0]))
-        if drawing.name in certified
-        else drawing
+        replace(drawing, error=error_along(known, drawing.view.separation[0])) if drawing.name in certified else drawing
         for drawing, known in zip(document_drawings(document, record), every, strict=True)
     )
     facts = (
@@ -148,9 +146,7 @@ def table_sheet(table: Table, file: str, record: Mapping[str, Any]) -> Sheet:
 def compared(first: Sheet, second: Sheet) -> Sheet:
     """Return the first sheet with the second one's curves over it, for the interactions of both."""
     others = {drawing.name: drawing for drawing in second.drawings}
-    others |= {
-        "-".join(reversed(drawing.between)): drawing for drawing in second.drawings if drawing.between[1]
-    }
+    others |= {"-".join(reversed(drawing.between)): drawing for drawing in second.drawings if drawing.between[1]}
     pairs = [(drawing, others[drawing.name]) for drawing in first.drawings if drawing.name in others]
     if not pairs and len(first.drawings) == len(second.drawings) == 1:
         pairs = [(first.drawings[0], second.drawings[0])]

@@ -25,9 +25,7 @@ def predict_options(command: argparse.ArgumentParser) -> None:
     """Add the options of ``predict``."""
     _study_options(command)
     command.add_argument("--temperatures", metavar="LIST", help="in kelvin: 150:700:50 or 100,300")
-    command.add_argument(
-        "--subject", metavar="NAME", default="", help="show only this pair or crystal, such as W-P"
-    )
+    command.add_argument("--subject", metavar="NAME", default="", help="show only this pair or crystal, such as W-P")
     command.add_argument("--structure", metavar="NAME", action="append", default=[], help="only this crystal")
     command.set_defaults(command=_predict)
 
@@ -59,14 +57,10 @@ def _predict(options: argparse.Namespace) -> int:
 def trial_options(command: argparse.ArgumentParser) -> None:
     """Add the options of ``trial``."""
     _study_options(command)
-    command.add_argument(
-        "--length", metavar="TIME", default="1 ns", help='of the run to judge, such as "100 ns"'
-    )
+    command.add_argument("--length", metavar="TIME", default="1 ns", help='of the run to judge, such as "100 ns"')
     command.add_argument("--temperature", metavar="T", help='such as "300 K" (default: that of the document)')
     command.add_argument("--time-step", metavar="TIME", help='such as "2 fs"')
-    command.add_argument(
-        "--interpolation", metavar="RULE", default="", help="how the code reads between rows"
-    )
+    command.add_argument("--interpolation", metavar="RULE", default="", help="how the code reads between rows")
     command.add_argument("--particles", metavar="N", type=int, help="how many")
     command.add_argument("--steps", metavar="N", type=int, help="of each run")
     command.add_argument("--seeds", metavar="N", type=int, default=2, help="how many runs (default: 2)")

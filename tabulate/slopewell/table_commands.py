@@ -18,9 +18,7 @@ def foreign_options(command: argparse.ArgumentParser) -> None:
     """Add what describes a table that slopewell did not write."""
     command.add_argument("--columns", metavar="NAMES", default="", help="such as row,separation,energy,force")
     command.add_argument("--units", metavar="ENERGY,LENGTH", default="", help="units of the table's columns")
-    command.add_argument(
-        "--layout", metavar="FILE", default="", help="layout of the table, instead of columns"
-    )
+    command.add_argument("--layout", metavar="FILE", default="", help="layout of the table, instead of columns")
     command.add_argument("--block", metavar="N", type=int, help="which block of rows to read, from 1")
     command.add_argument(
         "--purpose",
@@ -41,17 +39,13 @@ def foreign_reading(options: argparse.Namespace) -> Reading:
 def convert_options(command: argparse.ArgumentParser) -> None:
     """Add the options of ``convert``."""
     command.add_argument("table", metavar="TABLE", help="the table to read")
-    command.add_argument(
-        "new", metavar="NEW", help="the file to write: .h5, .csv, .json, or text by --new-layout"
-    )
+    command.add_argument("new", metavar="NEW", help="the file to write: .h5, .csv, .json, or text by --new-layout")
     foreign_options(command)
     command.add_argument("--new-units", metavar="ENERGY,LENGTH", default="", help="units of the new table")
     command.add_argument("--new-layout", metavar="FILE", default="", help="layout of the new table")
     many = command.add_mutually_exclusive_group()
     many.add_argument("--rows", metavar="N", type=int, help="number of new rows")
-    many.add_argument(
-        "--tolerance", metavar="ENERGY", default="", help='largest error of new rows: "1e-6 kJ/mol"'
-    )
+    many.add_argument("--tolerance", metavar="ENERGY", default="", help='largest error of new rows: "1e-6 kJ/mol"')
     command.add_argument("--spacing", metavar="NAME", default="", help="what the new rows are even in")
     command.add_argument("--complete", action="store_true", help="add the column that is missing")
     command.add_argument("--mend", metavar="MISTAKE", default="", help="undo a mistake that check names")
@@ -85,18 +79,13 @@ def _convert(options: argparse.Namespace) -> int:
     if not done.written:
         print_report(done.report, out)
         out.print()
-        out.print(
-            "Nothing was written. Mend the errors (--mend MISTAKE), or accept a check by --accept CHECK."
-        )
+        out.print("Nothing was written. Mend the errors (--mend MISTAKE), or accept a check by --accept CHECK.")
         return FOUND
     for line in done.table.history:
         out.print(line, soft_wrap=True)
     units = done.table.units
     for name, (energy, force) in done.added.items():
-        out.print(
-            f"{name}: new rows add at most {energy:.3g} {units.energy.text} and {force:.3g} "
-            f"{units.force.text}"
-        )
+        out.print(f"{name}: new rows add at most {energy:.3g} {units.energy.text} and {force:.3g} {units.force.text}")
     for path in done.written:
         out.print(f"wrote {path}", soft_wrap=True)
     return GOOD
@@ -121,9 +110,7 @@ def compare_options(command: argparse.ArgumentParser) -> None:
 def _compare(options: argparse.Namespace) -> int:
     from .comparison import compare
 
-    found = compare(
-        options.first, options.second, tolerance=options.tolerance, reading=foreign_reading(options)
-    )
+    found = compare(options.first, options.second, tolerance=options.tolerance, reading=foreign_reading(options))
     if options.json:
         json.dump(found.record(), sys.stdout, indent=1, ensure_ascii=False, allow_nan=False)
         print()

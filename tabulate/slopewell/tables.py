@@ -164,9 +164,7 @@ def _foreign(path: Path, reading: Reading) -> tuple[Table, dict[str, Array]]:
     if not names or units is None:
         missing = "columns" if not names else "units"
         says = f"Its {missing} are not named."
-        remedy = (
-            "Add --columns separation,energy,force --units eV,angstrom (or what they are), or --layout FILE."
-        )
+        remedy = "Add --columns separation,energy,force --units eV,angstrom (or what they are), or --layout FILE."
         raise UnusableInput([Problem(f"--{missing}", says, remedy)], str(path))
     columns = read_columns(path, names, reading.block)
     with np.errstate(all="ignore"):
@@ -179,9 +177,7 @@ def parse_units(text: str) -> UnitSystem:
     """Return the units that a text such as "kJ/mol,nm" names."""
     energy, comma, length = text.partition(",")
     if not comma:
-        raise UnusableInput(
-            [Problem("--units", f'"{text}" is not energy,length.', "Write it like eV,angstrom.")]
-        )
+        raise UnusableInput([Problem("--units", f'"{text}" is not energy,length.', "Write it like eV,angstrom.")])
     return unit_system(energy.strip(), length.strip())
 
 

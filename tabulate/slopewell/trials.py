@@ -240,15 +240,11 @@ def _judged(studied: Studied, conditions: Conditions, courses: list[Course], ord
 
     slopes = {name: rate([course.causes[name] for course in courses]) for name in CAUSES}
     sizes = {
-        name: float(np.sqrt(np.mean([rate([course.causes[name]]).value ** 2 for course in courses])))
-        for name in CAUSES
+        name: float(np.sqrt(np.mean([rate([course.causes[name]]).value ** 2 for course in courses]))) for name in CAUSES
     }
     whole = sum(sizes.values()) or 1.0
     causes = tuple(Cause(name, slopes[name], sizes[name], sizes[name] / whole) for name in CAUSES)
-    around = [
-        course.energy - np.polyval(np.polyfit(course.time, course.energy, 1), course.time)
-        for course in courses
-    ]
+    around = [course.energy - np.polyval(np.polyfit(course.time, course.energy, 1), course.time) for course in courses]
     ripple = float(np.sqrt(np.mean(np.square(around)))) / (conditions.thermal * conditions.particles)
     return Trial(studied, conditions, rate([course.conserved for course in courses]), causes, ripple, order)
 
@@ -309,18 +305,14 @@ def _conditions(
     density = wanted["density"]
     if density is None:
         density = LIQUID / size**3
-        assumed.append(
-            f"number density: {density:.4g} angstrom^-3, {LIQUID} per cubed diameter of {size:.4g} angstrom"
-        )
+        assumed.append(f"number density: {density:.4g} angstrom^-3, {LIQUID} per cubed diameter of {size:.4g} angstrom")
     reach = max(curve.reach for curve in curves) * (1 + SKIN)
     least = int(np.ceil(density * (2.001 * reach) ** 3))
     count = int(wanted["particles"] or max(FEWEST_PARTICLES, least))
     if count > MOST_PARTICLES or count < least:
         count = max(min(count, MOST_PARTICLES), FEWEST_PARTICLES if wanted["particles"] is None else 1)
         density = min(density, count / (2.001 * reach) ** 3)
-        assumed.append(
-            f"number density lowered to {density:.4g} angstrom^-3, so that the box is twice the cutoff"
-        )
+        assumed.append(f"number density lowered to {density:.4g} angstrom^-3, so that the box is twice the cutoff")
     step = wanted["step"]
     if step is None:
         step = _tenth_of_vibration(studied, K_B * temperature, weights)

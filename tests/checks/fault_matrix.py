@@ -47,9 +47,7 @@ def morse(depth: float, stiffness: float, place: float) -> Energy:
 
 
 def exp6(epsilon: float, alpha: float, place: float) -> Energy:
-    return lambda r: (
-        epsilon / (1 - 6 / alpha) * (6 / alpha * np.exp(alpha * (1 - r / place)) - (place / r) ** 6)
-    )
+    return lambda r: epsilon / (1 - 6 / alpha) * (6 / alpha * np.exp(alpha * (1 - r / place)) - (place / r) ** 6)
 
 
 def zbl(first: int, second: int) -> Energy:
@@ -226,9 +224,7 @@ def _late_switch(share: float, continuity: int, stage: str) -> Callable[[Sample,
         start = end - share * (end - float(r[0]))
         y = np.clip((end - r) / (end - start), 0.0, 1.0)
         polynomial = {1: (3, -2), 2: (10, -15, 6), 3: (35, -84, 70, -20)}[continuity]
-        weight = np.where(
-            r < start, 1.0, y ** (continuity + 1) * sum(c * y**k for k, c in enumerate(polynomial))
-        )
+        weight = np.where(r < start, 1.0, y ** (continuity + 1) * sum(c * y**k for k, c in enumerate(polynomial)))
         return Sample(r, s.energy * weight, s.force * weight if stage == "slope" else s.force)
 
     return switch
@@ -241,9 +237,7 @@ def _offset(part: float, column: str) -> Callable[[Sample, Clean, str], Sample]:
         if column == "force":
             return Sample(s.separation, s.energy, s.force + np.where(live, part * scale, 0.0))
         end = s.separation[live][-1]
-        return Sample(
-            s.separation, s.energy + np.where(live, part * scale * (s.separation - end), 0.0), s.force
-        )
+        return Sample(s.separation, s.energy + np.where(live, part * scale * (s.separation - end), 0.0), s.force)
 
     return shift
 
@@ -437,9 +431,7 @@ def main(count: int) -> None:
             if found is not None:
                 names[found] += 1
         good = sum(
-            number
-            for name, number in names.items()
-            if name == fault.name or name.startswith(f"{fault.name} with")
+            number for name, number in names.items() if name == fault.name or name.startswith(f"{fault.name} with")
         )
         right, seen = right + good, seen + sum(names.values())
         print(

@@ -16,9 +16,7 @@ STIFFNESS = 72 * DEPTH / EQUILIBRIUM**2
 PULL = (26 / 7) ** (1 / 6)
 LARGEST = 24 * DEPTH / SIZE * (2 * PULL**-13 - PULL**-7)
 # Wavenumber of 20 dalton on that spring: sqrt(k/m)/(2 pi c), with CODATA 2022 units.
-WAVENUMBER = (STIFFNESS * 16.02176634 / (20 * 1.66053906892e-27)) ** 0.5 / (
-    2 * 3.141592653589793 * 29979245800
-)
+WAVENUMBER = (STIFFNESS * 16.02176634 / (20 * 1.66053906892e-27)) ** 0.5 / (2 * 3.141592653589793 * 29979245800)
 
 EXPECTED = {
     "equilibrium-separation": EQUILIBRIUM,

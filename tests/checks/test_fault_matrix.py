@@ -40,9 +40,7 @@ def test_no_alarm_on_clean_tables_stored_roughly(curve: Clean, stored: str) -> N
     plain = clean(curve, 1000, "eV,angstrom")
     columns = (plain.separation, plain.energy, plain.force)
     if stored == "four decimals":
-        rough = Sample(
-            *(np.round(column, decimals) for column, decimals in zip(columns, (6, 4, 4), strict=True))
-        )
+        rough = Sample(*(np.round(column, decimals) for column, decimals in zip(columns, (6, 4, 4), strict=True)))
     else:
         rough = Sample(*(column.astype(np.float32).astype(np.float64) for column in columns))
 

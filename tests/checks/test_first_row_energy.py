@@ -18,9 +18,7 @@ def found(energy: float, folder: Path, head: str = HEAD) -> list[Finding]:
     return list(CHECK.look(facts(text(wall, head=head), folder)))
 
 
-@pytest.mark.parametrize(
-    ("low", "levels"), [(4.99, ["error"]), (5.01, ["warning"]), (19.9, ["warning"]), (20.1, [])]
-)
+@pytest.mark.parametrize(("low", "levels"), [(4.99, ["error"]), (5.01, ["warning"]), (19.9, ["warning"]), (20.1, [])])
 def test_a_low_first_row_is_an_error_and_a_middling_one_a_warning(
     low: float, levels: list[str], tmp_path: Path
 ) -> None:
@@ -35,9 +33,7 @@ def test_without_a_temperature_it_is_a_note(tmp_path: Path) -> None:
 
 
 @pytest.mark.parametrize(("start", "levels"), [(0.17, []), (0.19, ["error"])])
-def test_a_bounded_repulsion_must_start_close_to_zero(
-    start: float, levels: list[str], tmp_path: Path
-) -> None:
+def test_a_bounded_repulsion_must_start_close_to_zero(start: float, levels: list[str], tmp_path: Path) -> None:
     # The cutoff lies at 9 angstrom; 2 % of it is 0.18.
     core = f'form = "gaussian-core"\nparameters = {{ epsilon = {THERMAL}, sigma = 3 }}\n'
     document = text(core, cutoff=SWITCH, grid=GRID.replace("from = 2.5", f"from = {start}"))

@@ -51,11 +51,7 @@ def test_separations_out_of_order_are_named_by_their_rows(row: int, value: float
 
 @pytest.mark.parametrize("power", [1, 2, -1, 0])
 def test_rows_that_keep_a_rule_are_no_finding(power: int) -> None:
-    even = (
-        np.linspace(np.log(3.0), np.log(12.0), 300)
-        if power == 0
-        else np.linspace(3.0**power, 12.0**power, 300)
-    )
+    even = np.linspace(np.log(3.0), np.log(12.0), 300) if power == 0 else np.linspace(3.0**power, 12.0**power, 300)
     r = np.exp(even) if power == 0 else even ** (1 / power)
 
     assert "rows-evenly-spaced" not in found(r, energy(r), force(r))
@@ -80,9 +76,7 @@ def short(column: Array, digits: int) -> Array:
 def test_too_few_digits_are_a_warning(digits: int, mistake: str | None) -> None:
     finding = found(R, short(energy(R), digits), short(force(R), digits)).get("enough-digits")
 
-    assert (None if finding is None else (finding.level, finding.mistake)) == (
-        mistake and ("warning", mistake)
-    )
+    assert (None if finding is None else (finding.level, finding.mistake)) == (mistake and ("warning", mistake))
 
 
 @pytest.mark.parametrize(("purpose", "level"), [("", "warning"), ("dynamics", "error")])

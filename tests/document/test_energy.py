@@ -65,8 +65,7 @@ CASES = {
         [
             (
                 ENERGY,
-                "The formula can't be read from here on: "
-                "an operator, a number, a name or a bracket is missing.",
+                "The formula can't be read from here on: an operator, a number, a name or a bracket is missing.",
             )
         ],
     ),
@@ -78,9 +77,7 @@ CASES = {
 
 
 @pytest.mark.parametrize(("interaction", "said"), CASES.values(), ids=CASES)
-def test_a_mistake_of_an_interaction_is_said(
-    interaction: str, said: list[tuple[str, str]], tmp_path: Path
-) -> None:
+def test_a_mistake_of_an_interaction_is_said(interaction: str, said: list[tuple[str, str]], tmp_path: Path) -> None:
     assert problems(text(interaction), tmp_path) == said
 
 
@@ -92,9 +89,7 @@ def test_a_mistake_of_an_interaction_is_said(
         ("A*rho/r^2*rho^2", "A force is minus the slope"),
     ],
 )
-def test_a_force_of_another_dimension_is_told_what_it_looks_like(
-    force: str, hint: str, tmp_path: Path
-) -> None:
+def test_a_force_of_another_dimension_is_told_what_it_looks_like(force: str, hint: str, tmp_path: Path) -> None:
     with pytest.raises(UnusableInput) as caught:
         read(text(f'{EXP_6}force = "{force}"\n{VALUES}'), tmp_path)
     (problem,) = caught.value.problems
@@ -135,18 +130,14 @@ def test_a_default_of_a_form_is_taken_where_nothing_is_given(tmp_path: Path) -> 
 
 def test_a_form_is_a_formula_of_the_catalogue_and_nothing_more(tmp_path: Path) -> None:
     form = 'form = "buckingham"\nparameters = { A = 9576, rho = 0.27614, C = 62.03 }\n'
-    own, known = (
-        read(text(part), tmp_path).interactions[0].potential.bare for part in (EXP_6 + VALUES, form)
-    )
+    own, known = (read(text(part), tmp_path).interactions[0].potential.bare for part in (EXP_6 + VALUES, form))
     r = np.linspace(2.5, 9, 20)
     assert np.array_equal(own.derivatives(r, 2), known.derivatives(r, 2))
 
 
 def test_built_in_constants_need_no_parameter(tmp_path: Path) -> None:
     # e²/4πε₀ = 14.399645 eV Å (CODATA 2022), k_B in eV/K.
-    interaction = (
-        'energy = "ke*q^2/r + kB*temperature*(1 - 1)"\nparameters = { q = 2, temperature = "300 K" }\n'
-    )
+    interaction = 'energy = "ke*q^2/r + kB*temperature*(1 - 1)"\nparameters = { q = 2, temperature = "300 K" }\n'
     bare = read(text(interaction), tmp_path).interactions[0].potential.bare
     assert bare.derivatives(np.array([4.0]), 0)[0, 0] == pytest.approx(14.3996454787, rel=1e-9)
 

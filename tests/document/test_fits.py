@@ -45,9 +45,7 @@ COLUMN = ', weight = "column"'
 
 
 @pytest.mark.parametrize("seed", range(4))
-def test_a_scan_of_a_published_morse_curve_is_fitted_back_within_its_errors(
-    seed: int, tmp_path: Path
-) -> None:
+def test_a_scan_of_a_published_morse_curve_is_fitted_back_within_its_errors(seed: int, tmp_path: Path) -> None:
     scan(tmp_path, seed=seed)
     (fit,) = fitted(tmp_path, COLUMN).fits
     off = [(p.value - true) / p.error for p, true in zip(fit.parameters, (DEPTH, RANGE, PLACE), strict=True)]
@@ -62,9 +60,7 @@ def test_without_noise_the_parameters_come_back_exactly(tmp_path: Path) -> None:
     scan(tmp_path, noise=0.0)
     found = fitted(tmp_path)
     assert [p.value for p in found.fits[0].parameters] == pytest.approx([DEPTH, RANGE, PLACE], rel=1e-8)
-    assert found.potential.bare.derivatives(R, 0)[0] * 8065.543937 == pytest.approx(
-        morse(R), rel=1e-5, abs=0.01
-    )
+    assert found.potential.bare.derivatives(R, 0)[0] * 8065.543937 == pytest.approx(morse(R), rel=1e-5, abs=0.01)
 
 
 def test_a_formula_of_ones_own_is_fitted_in_the_units_of_its_starts(tmp_path: Path) -> None:

@@ -8,9 +8,7 @@ import numpy as np
 import pytest
 from documents import HEAD, problems, read
 
-UNITS = (
-    '[units]\nenergy = "K"\nlength = "nm"\n[species.A]\ncharge = 1\n[species.B]\ncharge = -1\n[species.C]\n'
-)
+UNITS = '[units]\nenergy = "K"\nlength = "nm"\n[species.A]\ncharge = 1\n[species.B]\ncharge = -1\n[species.C]\n'
 REST = '[cutoff]\nat = 0.9\ntreatment = "shifted-force"\n[grid]\nfrom = 0.25\nto = 0.9\nrows = 101\n'
 
 
@@ -43,9 +41,7 @@ def test_the_pairs_that_are_not_written_are_mixed(tmp_path: Path) -> None:
 
 def test_a_written_pair_stays_as_it_is(tmp_path: Path) -> None:
     own = ALL + like("A", 7, 0.3).replace('"A", "A"', '"B", "A"')
-    found = {
-        one.potential.name: one for one in read(document('rule = "geometric"', own), tmp_path).interactions
-    }
+    found = {one.potential.name: one for one in read(document('rule = "geometric"', own), tmp_path).interactions}
     assert list(found) == ["A-A", "B-B", "C-C", "B-A", "A-C", "B-C"]
     assert found["B-A"].origin.kind == "stated"
 
@@ -75,9 +71,7 @@ def test_charges_are_added_to_mixed_pairs_where_asked(tmp_path: Path) -> None:
     pairs = like("A", 100, 0.3) + like("B", 400, 0.4)
     exclude = 'exclude = [["C", "C"], ["C", "A"], ["C", "B"]]\n'
     plain, charged = (
-        read(document(f'rule = "lorentz-berthelot"\n{exclude}charges = {on}', pairs), tmp_path).interactions[
-            2
-        ]
+        read(document(f'rule = "lorentz-berthelot"\n{exclude}charges = {on}', pairs), tmp_path).interactions[2]
         for on in ("false", "true")
     )
     more = [one.potential.bare.derivatives(np.array([4.0]), 0)[0, 0] for one in (charged, plain)]
@@ -100,8 +94,7 @@ MISTAKES = {
         [
             (
                 "mixing",
-                "A-B can't be mixed: kong was published for lennard-jones, born-mayer, buckingham, "
-                "not for mie.",
+                "A-B can't be mixed: kong was published for lennard-jones, born-mayer, buckingham, not for mie.",
             )
         ],
     ),

@@ -14,9 +14,7 @@ U = 0.04 * ((3.4 / R) ** 12 - (3.4 / R) ** 6)
 SLOPE = 0.04 * (-12 * 3.4**12 / R**13 + 6 * 3.4**6 / R**7)
 
 
-def write(
-    folder: Path, *columns: np.ndarray, head: str = "separation,energy\n", separator: str = ","
-) -> None:
+def write(folder: Path, *columns: np.ndarray, head: str = "separation,energy\n", separator: str = ",") -> None:
     rows = (separator.join(f"{value:.12g}" for value in row) for row in zip(*columns, strict=True))
     (folder / "scan.csv").write_text(head + "\n".join(rows) + "\n", encoding="utf-8")
 

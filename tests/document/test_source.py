@@ -85,9 +85,7 @@ def test_a_number_that_no_table_can_hold_is_refused_with_its_place(value: str, t
     assert "is not a finite number within ±1e300" in problem.says
 
 
-@pytest.mark.parametrize(
-    ("name", "content"), [("deep.json", "[" * 100_000), ("deep.toml", "a = " + "[" * 100_000)]
-)
+@pytest.mark.parametrize(("name", "content"), [("deep.json", "[" * 100_000), ("deep.toml", "a = " + "[" * 100_000)])
 def test_a_document_nested_without_end_is_refused(name: str, content: str, tmp_path: Path) -> None:
     assert "This is not valid" in refused(tmp_path, content, name).says
 

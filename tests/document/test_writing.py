@@ -28,11 +28,7 @@ values = st.recursive(
 
 def same(one: Any, other: Any) -> bool:
     if isinstance(one, dict):
-        return (
-            isinstance(other, dict)
-            and one.keys() == other.keys()
-            and all(same(one[k], other[k]) for k in one)
-        )
+        return isinstance(other, dict) and one.keys() == other.keys() and all(same(one[k], other[k]) for k in one)
     if isinstance(one, list):
         return isinstance(other, list) and len(one) == len(other) and all(map(same, one, other))
     return bool(one == other) and type(one) is type(other)

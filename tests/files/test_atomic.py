@@ -45,9 +45,7 @@ def test_a_failure_leaves_what_was_there_and_nothing_else(tmp_path: Path) -> Non
     assert path.read_text() == "old"
 
 
-@pytest.mark.parametrize(
-    "error", [OSError(28, "No space left on device"), PermissionError(13, "Permission denied")]
-)
+@pytest.mark.parametrize("error", [OSError(28, "No space left on device"), PermissionError(13, "Permission denied")])
 def test_a_full_disk_is_said_in_one_line(error: OSError, tmp_path: Path) -> None:
     wanted = rf"a\.txt can't be written: {error.strerror}"
     with pytest.raises(UnusableInput, match=wanted), whole_file(tmp_path / "a.txt"):

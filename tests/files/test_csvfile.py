@@ -40,9 +40,7 @@ def test_the_sidecar_describes_every_column(path: Path) -> None:
     assert metadata["@context"][0] == "http://www.w3.org/ns/csvw"
     assert metadata["url"] == path.name
     columns = metadata["tableSchema"]["columns"]
-    assert [(c["name"], c["datatype"]) for c in columns] == [
-        (n, "double") for n in ("separation", "energy", "force")
-    ]
+    assert [(c["name"], c["datatype"]) for c in columns] == [(n, "double") for n in ("separation", "energy", "force")]
     assert [c["urn:slopewell:unit"] for c in columns] == ["angstrom", "eV", "eV/angstrom"]
 
 

@@ -40,9 +40,7 @@ def test_a_table_written_twice_is_the_same_bytes(known: Format, tmp_path: Path) 
     for name in ("one", "two"):
         (tmp_path / name).mkdir()
         written(known, small_table(), tmp_path / name)
-    one, two = (
-        {path.name: path.read_bytes() for path in (tmp_path / name).iterdir()} for name in ("one", "two")
-    )
+    one, two = ({path.name: path.read_bytes() for path in (tmp_path / name).iterdir()} for name in ("one", "two"))
     assert one == two
 
 

@@ -79,20 +79,14 @@ def test_the_shortest_numbers_read_back_to_the_last_bit(
     held = tuple(Column(name) for name in rows.columns())
     chosen = Layout("any", held, separator=separator, units=EV)
     (found,) = layout.read(written(chosen, tmp_path_factory.mktemp("any"), rows), chosen).interactions
-    assert {n: c.tobytes() for n, c in found.columns().items()} == {
-        n: c.tobytes() for n, c in rows.columns().items()
-    }
+    assert {n: c.tobytes() for n, c in found.columns().items()} == {n: c.tobytes() for n, c in rows.columns().items()}
 
 
 @pytest.mark.parametrize(
     ("quantity", "factor"), [("slope", 1.0), ("force-over-separation", 1.0), ("separation-squared", 1.0)]
 )
-def test_a_quantity_that_stands_for_another_gives_it_back(
-    quantity: str, factor: float, tmp_path: Path
-) -> None:
-    columns = (
-        (Column(quantity), ENERGY) if quantity == "separation-squared" else (SEPARATION, Column(quantity))
-    )
+def test_a_quantity_that_stands_for_another_gives_it_back(quantity: str, factor: float, tmp_path: Path) -> None:
+    columns = (Column(quantity), ENERGY) if quantity == "separation-squared" else (SEPARATION, Column(quantity))
     chosen = Layout("other", columns, units=EV)
     (rows,) = small_table().interactions
     (found,) = layout.read(written(chosen, tmp_path), chosen).interactions

@@ -47,10 +47,5 @@ def _anything(inner: st.SearchStrategy[str]) -> st.SearchStrategy[str]:
 @pytest.fixture(scope="session")
 def any_formulas() -> st.SearchStrategy[str]:
     """Formulas that use the whole language, whatever they mean."""
-    leaves = (
-        st.sampled_from(["r", "sigma", "kB", "C_6"])
-        | WHOLE
-        | DECIMAL
-        | st.sampled_from(["(1e400*r)", "2.5E-7"])
-    )
+    leaves = st.sampled_from(["r", "sigma", "kB", "C_6"]) | WHOLE | DECIMAL | st.sampled_from(["(1e400*r)", "2.5E-7"])
     return st.recursive(leaves, _anything, max_leaves=12)

@@ -48,8 +48,7 @@ def test_a_stretch_encloses_every_separation_in_it(
     assert all(wide.overlaps(point) for wide, point in zip(over, within, strict=True))
     # An overlap of a wide ball with one of 1e-30 is as good as containing its middle.
     assert all(
-        wide.contains(point.mid()) or (wide - point).contains(0)
-        for wide, point in zip(over, within, strict=True)
+        wide.contains(point.mid()) or (wide - point).contains(0) for wide, point in zip(over, within, strict=True)
     )
 
 
@@ -69,9 +68,7 @@ def test_thin_balls_hold_the_taylor_coefficients_of_mpmath(text: str, function: 
     with mpmath.workdps(60):
         wanted = mpmath.taylor(function, mpmath.mpf(5) / 4, 5)
         for found, right in zip(thin(text, "5/4", 5), wanted, strict=True):
-            assert float(abs(mpmath.mpf(found.mid().str(40, radius=False)) - right)) < 1e-28 * (
-                1 + float(abs(right))
-            )
+            assert float(abs(mpmath.mpf(found.mid().str(40, radius=False)) - right)) < 1e-28 * (1 + float(abs(right)))
             assert float(found.rad()) < 1e-30 * (1 + float(abs(right)))
 
 
@@ -84,17 +81,13 @@ def test_the_mean_value_form_is_tighter_than_the_naive_one() -> None:
     assert tight[0].rad() < 0.2 * naive[0].rad()
 
 
-@pytest.mark.parametrize(
-    "text", ["1/(r - 1)", "log(r - 1)", "sqrt(r - 1)", "(r - 1)^-2", "(r - 1)^0.3", "tan(pi/2*r)"]
-)
+@pytest.mark.parametrize("text", ["1/(r - 1)", "log(r - 1)", "sqrt(r - 1)", "(r - 1)^-2", "(r - 1)^0.3", "tan(pi/2*r)"])
 def test_a_pole_or_the_end_of_a_domain_is_not_finite(text: str) -> None:
     tree = bind(parse(text), {"pi": arb.pi()})
     assert not series(tree, stretch(0.5, 1.5), 1)[1].is_finite()
 
 
-@pytest.mark.parametrize(
-    "text", ["abs(r - 1)", "min(r, 1)", "max(r, 1)", "where(r < 1, r, 2)", "where(r >= 1, r, 2)"]
-)
+@pytest.mark.parametrize("text", ["abs(r - 1)", "min(r, 1)", "max(r, 1)", "where(r < 1, r, 2)", "where(r >= 1, r, 2)"])
 def test_a_branch_within_the_stretch_is_undecided(text: str) -> None:
     with pytest.raises(Undecided):
         series(bind(parse(text), {}), stretch(0.5, 1.5), 0)

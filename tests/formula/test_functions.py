@@ -21,8 +21,7 @@ POINTS = np.concatenate([np.geomspace(1e-3, 0.9, 60), np.linspace(1.0, 9.0, 60)]
 def ulps(found: np.ndarray, wanted: list[Any]) -> float:
     """The largest error, in units in the last place of the right value."""
     errors = [
-        float(abs(mpmath.mpf(float(x)) - y)) / np.spacing(abs(float(y)))
-        for x, y in zip(found, wanted, strict=True)
+        float(abs(mpmath.mpf(float(x)) - y)) / np.spacing(abs(float(y))) for x, y in zip(found, wanted, strict=True)
     ]
     return max(errors)
 

@@ -46,9 +46,7 @@ def test_the_published_landmarks_of_lennard_jones_are_found(
 def test_every_zero_of_a_wave_is_found() -> None:
     result = found("sin(r)", "0.5", "40")
     assert result.proved
-    assert [float(root.mid()) for root in result.found] == pytest.approx(
-        [k * pi for k in range(1, 13)], rel=1e-15
-    )
+    assert [float(root.mid()) for root in result.found] == pytest.approx([k * pi for k in range(1, 13)], rel=1e-15)
 
 
 @given(st.lists(st.integers(2, 98), min_size=1, max_size=4, unique=True))

@@ -101,9 +101,7 @@ def test_what_overflows_or_has_no_value_is_not_finite() -> None:
     for text in ("1e400*r", "10^400*r", "1/(r - 1)", "log(-r)", "sqrt(r - 2)", "exp(1e3*r)", "r/(1 - 1)"):
         tree = bind(parse(text), {})
         assert not np.isfinite(derivatives(tree, np.array([1.0]), 1)[0, 0]), text
-        assert not np.isfinite(
-            accurate_derivatives(tree, Pair(np.array([1.0]), np.zeros(1)), 1)[0].rounded()[0]
-        )
+        assert not np.isfinite(accurate_derivatives(tree, Pair(np.array([1.0]), np.zeros(1)), 1)[0].rounded()[0])
 
 
 def test_a_huge_power_is_a_power_still() -> None:

@@ -15,9 +15,7 @@ BRANCHED = "where(r < 2, r^2, 10 + r)"
 def test_a_row_at_a_branch_point_takes_the_side_that_the_comparison_says() -> None:
     at = np.array([1.9, 2.0, 2.1])
     assert curve(BRANCHED, 1, 3).derivatives(at, 1)[1].tolist() == pytest.approx([3.8, 1.0, 1.0])
-    assert curve("where(r <= 2, r^2, 10 + r)", 1, 3).derivatives(at, 1)[1].tolist() == pytest.approx(
-        [3.8, 4.0, 1.0]
-    )
+    assert curve("where(r <= 2, r^2, 10 + r)", 1, 3).derivatives(at, 1)[1].tolist() == pytest.approx([3.8, 4.0, 1.0])
 
 
 def test_a_separation_beside_the_end_of_a_piece_by_rounding_counts_as_on_it() -> None:

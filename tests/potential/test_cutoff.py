@@ -19,9 +19,7 @@ Entries = Callable[[str], Any]
 BARE = curve(REDUCED_LENNARD_JONES, Fraction(4, 5), 5)
 
 
-def treated(
-    at: float, treatment: str, start: float | None = None, continuity: int = 2, end: float = 5
-) -> Curve:
+def treated(at: float, treatment: str, start: float | None = None, continuity: int = 2, end: float = 5) -> Curve:
     begin = None if start is None else Fraction(start)
     return treat(BARE, Cutoff(Fraction(at), treatment, begin, continuity), Fraction(end))
 
@@ -50,9 +48,7 @@ def test_the_switch_of_two_derivatives_is_that_of_the_closed_form() -> None:
 def test_the_switch_meets_one_and_zero_with_so_many_derivatives(continuity: int) -> None:
     weight = switch(Fraction(2), Fraction(5, 2), continuity)
     begin, end = (series(weight, ball(r), continuity + 1) for r in (Fraction(2), Fraction(5, 2)))
-    assert [float(c.mid()) for c in begin[: continuity + 1]] == pytest.approx(
-        [1] + [0] * continuity, abs=1e-25
-    )
+    assert [float(c.mid()) for c in begin[: continuity + 1]] == pytest.approx([1] + [0] * continuity, abs=1e-25)
     assert [float(c.mid()) for c in end[: continuity + 1]] == pytest.approx([0] * (continuity + 1), abs=1e-25)
     assert abs(float(begin[continuity + 1].mid())) > 1
     assert abs(float(end[continuity + 1].mid())) > 1
@@ -81,18 +77,14 @@ def test_a_switched_lennard_jones_curve_has_the_published_values(
 
 
 @pytest.mark.parametrize(("cutoff", "entry"), [(3, "T09-006"), (4, "T09-007")])
-def test_a_truncated_curve_jumps_by_the_published_steps(
-    cutoff: float, entry: str, published: Entries
-) -> None:
+def test_a_truncated_curve_jumps_by_the_published_steps(cutoff: float, entry: str, published: Entries) -> None:
     jumps = [float(word) for word in published(entry).value.replace(";", "").split() if word[:2] == "0."]
     energy, slope, curvature = at(treated(cutoff, "truncate"), cutoff, 2)
     assert [-energy, slope, -curvature] == pytest.approx([jumps[0], jumps[1], jumps[2]], rel=1e-12)
 
 
 @pytest.mark.parametrize(("cutoff", "entry"), [(2.5, "T09-009"), (3, "T09-010")])
-def test_a_force_shifted_curve_has_the_published_minimum(
-    cutoff: float, entry: str, published: Entries
-) -> None:
+def test_a_force_shifted_curve_has_the_published_minimum(cutoff: float, entry: str, published: Entries) -> None:
     reading = treated(cutoff, "shifted-force")
     landmarks = find_landmarks(reading, Fraction(4, 5), Fraction(5))
     assert landmarks.equilibrium_separation == pytest.approx(published(entry).part("r_min"), rel=1e-12)

@@ -45,8 +45,6 @@ def test_starts_without_a_finite_value_are_refused() -> None:
 
 
 def test_a_fit_tells_its_residuals() -> None:
-    fit = Fit(
-        "f", "", 2, "uniform", None, (FittedParameter("a", 1, 0.1),), ((1.0,),), ((1.0, 3.0), (2.0, -4.0))
-    )
+    fit = Fit("f", "", 2, "uniform", None, (FittedParameter("a", 1, 0.1),), ((1.0,),), ((1.0, 3.0), (2.0, -4.0)))
     assert fit.largest == (2.0, -4.0)
     assert fit.root_mean_square == pytest.approx(12.5**0.5)

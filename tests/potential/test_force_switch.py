@@ -34,9 +34,7 @@ def test_the_force_is_the_bare_force_times_the_weight(formula: str, continuity: 
     bare, found = treated(formula, continuity)
     r = np.array([1.0, 1.9, 2.05, 2.19, 2.21, 2.3, 2.45, 2.49])
     weight = np.where(r < 2, 1.0, derivatives(switch(START, END, continuity), r, 0)[0])
-    assert found.derivatives(r, 1)[1] == pytest.approx(
-        bare.derivatives(r, 1)[1] * weight, rel=1e-12, abs=1e-13
-    )
+    assert found.derivatives(r, 1)[1] == pytest.approx(bare.derivatives(r, 1)[1] * weight, rel=1e-12, abs=1e-13)
 
 
 def test_the_energy_is_the_integral_of_the_force() -> None:
@@ -67,9 +65,7 @@ def test_energy_and_force_do_not_jump_at_either_end(continuity: int) -> None:
     _, found = treated(REDUCED_LENNARD_JONES, continuity)
     for before, after in zip(found.pieces, found.pieces[1:], strict=False):
         left, right = (series(piece.tree, ball(before.end), 1) for piece in (before, after))
-        assert [float((b - a).mid()) for a, b in zip(left, right, strict=True)] == pytest.approx(
-            [0, 0], abs=1e-24
-        )
+        assert [float((b - a).mid()) for a, b in zip(left, right, strict=True)] == pytest.approx([0, 0], abs=1e-24)
 
 
 def test_landmarks_are_proved_up_to_the_cutoff() -> None:

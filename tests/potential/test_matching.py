@@ -25,8 +25,7 @@ def test_it_has_the_coefficients_asked_for_at_both_ends(
     for at, wanted in ((start, left), (start + width, right)):
         found = series(tree, ball(at), len(wanted) - 1)
         assert all(
-            c.contains(ball(w)) or abs(float((c - ball(w)).mid())) < 1e-25
-            for c, w in zip(found, wanted, strict=True)
+            c.contains(ball(w)) or abs(float((c - ball(w)).mid())) < 1e-25 for c, w in zip(found, wanted, strict=True)
         )
 
 

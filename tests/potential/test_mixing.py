@@ -59,16 +59,12 @@ def test_with_an_exponential_kong_gives_the_published_formula() -> None:
     assert float(found["C"]) == pytest.approx(40, rel=1e-15)
 
 
-@pytest.mark.parametrize(
-    ("rule", "form"), [(rule.name, form) for rule in RULES.values() for form in rule.mixes]
-)
+@pytest.mark.parametrize(("rule", "form"), [(rule.name, form) for rule in RULES.values() for form in rule.mixes])
 @given(
     st.fractions(Fraction(1, 100), 100, max_denominator=100),
     st.fractions(Fraction(1, 5), 5, max_denominator=100),
 )
-def test_a_species_mixed_with_itself_is_itself(
-    rule: str, form: str, energy: Fraction, length: Fraction
-) -> None:
+def test_a_species_mixed_with_itself_is_itself(rule: str, form: str, energy: Fraction, length: Fraction) -> None:
     size = "r_m" if form == "lennard-jones-9-6" else "sigma"
     plain = {"epsilon": energy, size: length}
     own = plain if form.startswith("lennard-jones") else {"A": energy, "rho": length, "C": Fraction(3)}
@@ -82,9 +78,7 @@ def test_a_species_mixed_with_itself_is_itself(
 @pytest.mark.parametrize("rule", RULES)
 def test_the_order_of_the_species_does_not_matter(rule: str) -> None:
     one, other = mixed(rule, "lennard-jones", NEON, KRYPTON), mixed(rule, "lennard-jones", KRYPTON, NEON)
-    assert {k: float(v) for k, v in one.items()} == pytest.approx(
-        {k: float(v) for k, v in other.items()}, rel=1e-15
-    )
+    assert {k: float(v) for k, v in one.items()} == pytest.approx({k: float(v) for k, v in other.items()}, rel=1e-15)
 
 
 def test_parameters_without_a_mean_are_refused() -> None:

@@ -48,9 +48,7 @@ def test_a_cubic_is_the_not_a_knot_spline_between_points_too() -> None:
     assert spline(points(), "cubic").derivatives(middle, 2)[2] == pytest.approx(expected(middle, 2), rel=1e-9)
 
 
-@pytest.mark.parametrize(
-    ("kind", "continuous"), [("cubic", 2), ("quintic", 4), ("monotone", 1), ("smoothing", 2)]
-)
+@pytest.mark.parametrize(("kind", "continuous"), [("cubic", 2), ("quintic", 4), ("monotone", 1), ("smoothing", 2)])
 def test_so_many_derivatives_do_not_jump(kind: str, continuous: int) -> None:
     curve = spline(points(error=0.01), kind)
     scale = float(np.abs(curve.derivatives(R, continuous)[continuous]).max())
@@ -64,9 +62,7 @@ def test_stated_slopes_are_used_and_help(kind: str, better: float) -> None:
     middle = (R[1:] + R[:-1]) / 2
     with_slopes, without = (spline(points(slopes=flag), kind) for flag in (True, False))
     assert with_slopes.derivatives(R, 1)[1] == pytest.approx(lennard_jones(R)[1], rel=1e-12)
-    off = [
-        np.abs(c.derivatives(middle, 1)[1] - lennard_jones(middle)[1]).max() for c in (with_slopes, without)
-    ]
+    off = [np.abs(c.derivatives(middle, 1)[1] - lennard_jones(middle)[1]).max() for c in (with_slopes, without)]
     assert off[0] * better < off[1]
 
 

@@ -17,9 +17,7 @@ def test_a_sum_has_the_edges_of_all_and_the_sum_of_derivatives() -> None:
 
 
 def test_at_an_edge_the_term_that_changes_there_says_which_side_it_belongs_to() -> None:
-    total = add_curves(
-        [curve("1/r", 1, 4), curve("where(r < 2, 5, 7)", 1, 4), curve("where(r <= 3, 0, 1)", 1, 4)]
-    )
+    total = add_curves([curve("1/r", 1, 4), curve("where(r < 2, 5, 7)", 1, 4), curve("where(r <= 3, 0, 1)", 1, 4)])
     assert total.derivatives(np.array([2.0, 3.0]), 0)[0] == pytest.approx([7.5, 7 + 1 / 3])
 
 

@@ -19,9 +19,7 @@ CurveOf = Callable[..., EnergyCurve]
 def curve_of() -> CurveOf:
     """Return the energy curve of a formula in eV and ångström; extra arguments are its parameters."""
 
-    def make(
-        formula: str, start: str, end: str, *, reach: float = inf, **parameters: str | Fraction
-    ) -> EnergyCurve:
+    def make(formula: str, start: str, end: str, *, reach: float = inf, **parameters: str | Fraction) -> EnergyCurve:
         tree = bind(parse(formula), {name: Fraction(value) for name, value in parameters.items()})
         curve = Curve(resolve(tree, Fraction(start), Fraction(end)))
         return from_curve(curve, "X-X", float(Fraction(start)), float(Fraction(end)), reach)

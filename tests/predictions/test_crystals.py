@@ -40,15 +40,11 @@ def test_sums_of_inverse_powers(
 
 
 @pytest.mark.parametrize(("entry", "name"), [("T03-012", "sc"), ("T03-013", "bcc"), ("T03-015", "hcp")])
-def test_lennard_jones_crystals(
-    published: Callable[[str], Any], reduced: EnergyCurve, entry: str, name: str
-) -> None:
+def test_lennard_jones_crystals(published: Callable[[str], Any], reduced: EnergyCurve, entry: str, name: str) -> None:
     stated, crystal = published(entry), Crystal(BY_NAME[name], {(0, 0): reduced})
     assert crystal.constant is not None
     assert crystal.constant * crystal.lattice.nearest == pytest.approx(stated.part("R0/sigma"), rel=1e-11)
-    assert crystal.sums(crystal.constant)[0] / crystal.structure.units == pytest.approx(
-        stated.part("E/eps"), rel=1e-11
-    )
+    assert crystal.sums(crystal.constant)[0] / crystal.structure.units == pytest.approx(stated.part("E/eps"), rel=1e-11)
 
 
 def test_bulk_modulus_of_lennard_jones(published: Callable[[str], Any], reduced: EnergyCurve) -> None:
@@ -82,9 +78,7 @@ def test_metals_of_girifalco_and_weizer(
 ) -> None:
     # L. A. Girifalco and V. G. Weizer, Phys. Rev. 114, 687 (1959); parameters from memory.
     stated = published(entry)
-    values = {
-        part.split("=")[0].strip(): float(part.split("=")[1].split()[0]) for part in stated.value.split(";")
-    }
+    values = {part.split("=")[0].strip(): float(part.split("=")[1].split()[0]) for part in stated.value.split(";")}
     curve = curve_of(MORSE, "0.8", "30", D=depth, a=steepness, re=bond)
     crystal = Crystal(BY_NAME[name], {(0, 0): curve})
     a = crystal.constant
@@ -115,9 +109,7 @@ SALTS = [
 ]
 
 
-def salt(
-    curve_of: CurveOf, rho: str, radii: tuple[str, str], c: tuple[str, ...], d: tuple[str, ...]
-) -> System:
+def salt(curve_of: CurveOf, rho: str, radii: tuple[str, str], c: tuple[str, ...], d: tuple[str, ...]) -> System:
     joule = 1 / ELEMENTARY_CHARGE
     names, curves = ("A", "B"), {}
     for k, (i, j) in enumerate([(0, 0), (0, 1), (1, 1)]):
@@ -173,9 +165,7 @@ def test_elastic_constants_add_up_to_the_bulk_modulus(reduced: EnergyCurve, name
         assert elastic[5, 5] < held[5, 5]
 
 
-def strained_energy(
-    structure: Structure, curve: EnergyCurve, a: float, strain: np.ndarray, shift: np.ndarray
-) -> float:
+def strained_energy(structure: Structure, curve: EnergyCurve, a: float, strain: np.ndarray, shift: np.ndarray) -> float:
     """Return the energy of a cell by a plain sum over a curve that ends, an own loop as a second way."""
     cell = a * np.array(structure.cell)
     places = a * np.array([place for _, place in structure.atoms])
@@ -202,9 +192,7 @@ def test_elastic_constants_against_finite_strains(curve_of: CurveOf, name: str) 
     def energy(strain: np.ndarray) -> float:
         if len(structure.atoms) == 1:
             return strained_energy(structure, curve, a, strain, np.zeros(3))
-        return float(
-            minimize(lambda w: strained_energy(structure, curve, a, strain, w), np.zeros(3), tol=1e-12).fun
-        )
+        return float(minimize(lambda w: strained_energy(structure, curve, a, strain, w), np.zeros(3), tol=1e-12).fun)
 
     step = 1e-3
     shear = np.zeros((3, 3))

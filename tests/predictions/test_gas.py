@@ -137,9 +137,7 @@ def test_second_virial_of_rare_gases(
     assert found == pytest.approx(reference, abs=scatter)
 
 
-def test_second_virial_in_cubic_centimetre_per_mole(
-    published: Callable[[str], Any], curve_of: CurveOf
-) -> None:
+def test_second_virial_in_cubic_centimetre_per_mole(published: Callable[[str], Any], curve_of: CurveOf) -> None:
     # Closed form with ε/k = 119.8 K, σ = 3.405 Å (Rowley, Nicholson and Parsonage 1975).
     argon = curve_of("4*e*((s/r)^12 - (s/r)^6)", "1.5", "20", e=Fraction("119.8") * KELVIN, s="3.405")
     for entry, temperature in (("T08-055", 150.0), ("T08-057", 500.0), ("T08-058", 1000.0)):

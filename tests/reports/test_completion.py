@@ -24,9 +24,7 @@ complete -c slopewell -n '__fish_seen_subcommand_from forms' -f -a 'mie morse'
 def test_commands_are_those_of_the_parser() -> None:
     top = argparse.ArgumentParser()
     commands = top.add_subparsers()
-    commands.add_parser("check", help="look at files").add_argument(
-        "--json", action="store_true", help="print it"
-    )
+    commands.add_parser("check", help="look at files").add_argument("--json", action="store_true", help="print it")
     commands.add_parser("forms")
     found = commands_of(top, {"forms": ("mie",)})
     assert [command.name for command in found] == ["check", "forms"]

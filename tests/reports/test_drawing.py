@@ -113,9 +113,7 @@ rows = 101
 def composed(tmp_path_factory: pytest.TempPathFactory) -> dict[str, Drawing]:
     folder = tmp_path_factory.mktemp("composed")
     (folder / "composed.toml").write_text(COMPOSED, encoding="utf-8")
-    rows = [
-        f"{r} {0.4 * ((2.9 / r) ** 12 - (2.9 / r) ** 6)}\n" for r in (2.4, 2.8, 3.2, 3.6, 4.0, 5.0, 6.0, 7.0)
-    ]
+    rows = [f"{r} {0.4 * ((2.9 / r) ** 12 - (2.9 / r) ** 6)}\n" for r in (2.4, 2.8, 3.2, 3.6, 4.0, 5.0, 6.0, 7.0)]
     (folder / "points.dat").write_text("".join(rows), encoding="utf-8")
     document = read_document(folder / "composed.toml")
     return {drawn.name: drawn for drawn in document_drawings(document, {})}

@@ -73,14 +73,10 @@ def test_the_checker_finds_a_planted_fault(text: str) -> None:
 
 
 def test_nothing_is_asked_of_any_other_place(elements: Elements, text: str) -> None:
-    links = [
-        attributes.get(key) or "" for _, attributes in elements.found for key in ("src", "href", "action")
-    ]
+    links = [attributes.get(key) or "" for _, attributes in elements.found for key in ("src", "href", "action")]
     assert {link[:1] for link in links if link} <= {"#", "d"}
     assert "://" not in text.split("<body>")[0]
-    (policy,) = (
-        a["content"] for a in elements.named("meta") if a.get("http-equiv") == "Content-Security-Policy"
-    )
+    (policy,) = (a["content"] for a in elements.named("meta") if a.get("http-equiv") == "Content-Security-Policy")
     assert policy.startswith("default-src 'none'")
 
 

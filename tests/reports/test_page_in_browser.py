@@ -165,9 +165,7 @@ def test_units_are_switched_by_the_exact_factors(
     Select(of_document.find_element(By.ID, "units")).select_by_index(choice)
     for shown in of_document.find_elements(By.CSS_SELECTOR, "#pair-0 .facts data.quantity"):
         powers = [int(power) for power in shown.get_attribute("data-powers").split(",")]
-        factor: Fraction = (
-            ratio(own.energy, target.energy) ** powers[0] * ratio(own.length, target.length) ** powers[1]
-        )
+        factor: Fraction = ratio(own.energy, target.energy) ** powers[0] * ratio(own.length, target.length) ** powers[1]
         value = Fraction(shown.get_attribute("value")) * factor
         digits = int(shown.get_attribute("data-digits") or 6)
         assert shown.text.split()[0] == number_text(float(value), digits)

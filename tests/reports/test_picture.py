@@ -53,8 +53,7 @@ def test_the_curve_is_the_drawing(sheet: Sheet) -> None:
 
 def test_energy_and_force_differ_in_colour_and_line(sheet: Sheet) -> None:
     lines = [
-        ax.lines[-3 if ax.get_ylabel().startswith("energy") else -2]
-        for ax in figure_of("", sheet.drawings[:1]).axes
+        ax.lines[-3 if ax.get_ylabel().startswith("energy") else -2] for ax in figure_of("", sheet.drawings[:1]).axes
     ]
     assert lines[0].get_color() != lines[1].get_color()
     assert lines[0].get_linestyle() != lines[1].get_linestyle()

@@ -60,9 +60,7 @@ def test_the_bare_curve_stands_beside_the_treated_one(tmp_path: Path) -> None:
 
 
 def test_what_needs_a_mass_or_a_temperature_is_null_without(tmp_path: Path) -> None:
-    record = landmarks(
-        tmp_path, UNITS.replace('mass = "40 dalton"\n', ""), HEAD.replace('temperature = "100 K"\n', "")
-    )
+    record = landmarks(tmp_path, UNITS.replace('mass = "40 dalton"\n', ""), HEAD.replace('temperature = "100 K"\n', ""))
     assert (record["harmonic_wavenumber"], record["classical_amplitude"]) == (None, None)
 
 
@@ -84,14 +82,10 @@ def test_acceptances_stand_in_the_record_only_where_there_are_any() -> None:
 
 
 def test_an_unusable_file_has_problems_and_nothing_else() -> None:
-    error = UnusableInput(
-        [Problem("grid.from", "Too small.", "Enlarge it.", excerpt="0\n^", line=3)], "a.toml"
-    )
+    error = UnusableInput([Problem("grid.from", "Too small.", "Enlarge it.", excerpt="0\n^", line=3)], "a.toml")
     record = Report((unusable(error, "a.toml"),)).record()["subjects"][0]
     assert record == {
         "file": "a.toml",
         "verdict": "unusable",
-        "problems": [
-            {"at": "grid.from", "says": "Too small.", "try": "Enlarge it.", "line": 3, "excerpt": "0\n^"}
-        ],
+        "problems": [{"at": "grid.from", "says": "Too small.", "try": "Enlarge it.", "line": 3, "excerpt": "0\n^"}],
     }

@@ -33,8 +33,6 @@ def test_json_says_the_same(document: Document) -> None:
     assert stated_interactions(as_json)["A-B"] == stated_interactions(document.text)["A-B"]
 
 
-@pytest.mark.parametrize(
-    "text", ["", "no document", "{", '[units]\nenergy = "nm"\nlength = "nm"', "interaction = 1"]
-)
+@pytest.mark.parametrize("text", ["", "no document", "{", '[units]\nenergy = "nm"\nlength = "nm"', "interaction = 1"])
 def test_a_text_that_is_no_document_states_nothing(text: str) -> None:
     assert stated_interactions(text) == {}

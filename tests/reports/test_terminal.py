@@ -37,9 +37,7 @@ def shown(*subjects: Subject, width: int = 80, **how: Any) -> str:
 
 
 def test_a_subject_is_shown_interaction_by_interaction() -> None:
-    subject = Subject(
-        "pair.toml", findings=(FINDING,), landmarks=(LANDMARKS,), title="Pair", accepted=("finite",)
-    )
+    subject = Subject("pair.toml", findings=(FINDING,), landmarks=(LANDMARKS,), title="Pair", accepted=("finite",))
     assert shown(subject) == (
         "pair.toml  fails\n"
         "  Pair\n"

@@ -32,9 +32,7 @@ def test_the_cutoff_is_inside() -> None:
 def test_a_spoilt_row_does_not_set_the_limits() -> None:
     spoilt = WELL.copy()
     spoilt[1500] = 1e6
-    assert view_of(R, spoilt, PUSH, None, 2.5).energy == pytest.approx(
-        view_of(R, WELL, PUSH, None, 2.5).energy
-    )
+    assert view_of(R, spoilt, PUSH, None, 2.5).energy == pytest.approx(view_of(R, WELL, PUSH, None, 2.5).energy)
 
 
 def test_a_fall_at_short_range_does_not_set_the_limits() -> None:

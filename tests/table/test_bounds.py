@@ -82,9 +82,7 @@ def test_every_form_is_within_its_bound_and_a_smooth_one_close_to_it(form: Form,
         ("quintic-hermite", 6, 1 / 46080, sqrt(5) / 30000),
     ],
 )
-def test_the_classical_constants_are_attained(
-    rule: str, degree: int, energy: float, force: float | None
-) -> None:
+def test_the_classical_constants_are_attained(rule: str, degree: int, energy: float, force: float | None) -> None:
     reading, grid = curve(f"r^{degree}", "1", "3"), Grid(Fraction(1), Fraction(3), None)
     derivative = float(np.prod(range(1, degree + 1)))
     bound = proved(reading, grid, 9, "separation", rule)
@@ -120,9 +118,7 @@ def test_the_complete_spline_stays_within_the_bound_of_hall_and_meyer() -> None:
     ],
     ids=lambda cutoff: f"{cutoff.treatment}-{cutoff.continuity}",
 )
-def test_less_smooth_curves_stay_within_their_bounds(
-    cutoff: Cutoff, spacing: str, rule: str, ends: str
-) -> None:
+def test_less_smooth_curves_stay_within_their_bounds(cutoff: Cutoff, spacing: str, rule: str, ends: str) -> None:
     grid = Grid(Fraction(4, 5), Fraction(3), None)
     reading = treat(curve(LENNARD_JONES, "4/5", "3"), cutoff, grid.end)
     for rows in (23, 222):
@@ -165,9 +161,7 @@ def test_printed_digits_are_part_of_the_bound() -> None:
 
 
 FORMS = [
-    form
-    for form in catalogue().values()
-    if form.name in ("lennard-jones", "morse", "buckingham", "exp-6", "yukawa")
+    form for form in catalogue().values() if form.name in ("lennard-jones", "morse", "buckingham", "exp-6", "yukawa")
 ]
 
 

@@ -20,9 +20,7 @@ LENNARD_JONES = Curve(resolve(bind(parse("4*((1/r)^12 - (1/r)^6)"), {}), GRID.st
 
 @pytest.mark.parametrize("spacing", SPACINGS)
 @pytest.mark.parametrize("rule", ["linear", "cubic-hermite", "quintic-hermite"])
-def test_the_count_keeps_the_tolerance_when_sampled_and_a_tenth_fewer_does_not(
-    rule: str, spacing: str
-) -> None:
+def test_the_count_keeps_the_tolerance_when_sampled_and_a_tenth_fewer_does_not(rule: str, spacing: str) -> None:
     tolerance = 1e-4 if rule == "linear" else 1e-6
     rows = rows_needed(ErrorBounds(LENNARD_JONES, GRID), spacing, rule, "clamped", tolerance, None)
     assert rows is not None

@@ -45,8 +45,7 @@ CURVES = {
     ),
     "branched": (
         text(
-            'energy = "c/r*where(r < edge, 1, 2)"\n'
-            'parameters = { c = "2 eV angstrom", edge = "4 angstrom" }\n',
+            'energy = "c/r*where(r < edge, 1, 2)"\nparameters = { c = "2 eV angstrom", edge = "4 angstrom" }\n',
             cutoff='cutoff = { at = 9, treatment = "truncate" }\n',
         ),
         branched_terms,
@@ -64,9 +63,7 @@ def rows_of(known: Interaction, units: UnitSystem) -> Rows:
 
 @pytest.mark.parametrize("units", [EV, KJ], ids=["eV-angstrom", "kJ/mol-nm"])
 @pytest.mark.parametrize("name", CURVES)
-def test_every_number_is_within_four_units_of_the_largest_term(
-    name: str, units: UnitSystem, tmp_path: Path
-) -> None:
+def test_every_number_is_within_four_units_of_the_largest_term(name: str, units: UnitSystem, tmp_path: Path) -> None:
     document, terms = CURVES[name]
     known = interaction(document, tmp_path)
     rows = rows_of(known, units)

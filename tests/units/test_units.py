@@ -87,9 +87,7 @@ def test_a_conversion_has_its_published_factor(
     assert float(ratio(unit(old), unit(new))) == pytest.approx(published(entry).number, rel=tolerance)
 
 
-@pytest.mark.parametrize(
-    ("entry", "energy", "length"), [("T01-009", "kJ/mol", "nm"), ("T01-010", "kcal/mol", "Å")]
-)
+@pytest.mark.parametrize(("entry", "energy", "length"), [("T01-009", "kJ/mol", "nm"), ("T01-010", "kcal/mol", "Å")])
 def test_the_coulomb_constant_has_its_published_value(
     published: Published, entry: str, energy: str, length: str
 ) -> None:
@@ -223,9 +221,7 @@ def test_a_text_states_a_quantity(text: str, value: Fraction, words: str) -> Non
     assert (found.value, found.dimension) == (value, dimension(words))
 
 
-@pytest.mark.parametrize(
-    "text", ["nm", "", "nm 0.47", "1,5 nm", "1e9999 nm", "nan nm", "inf nm", "1_0 nm", "0x1 nm"]
-)
+@pytest.mark.parametrize("text", ["nm", "", "nm 0.47", "1,5 nm", "1e9999 nm", "nan nm", "inf nm", "1_0 nm", "0x1 nm"])
 def test_what_is_no_quantity_is_refused(text: str) -> None:
     with pytest.raises(UnitError):
         quantity(text)
@@ -257,9 +253,7 @@ def test_a_unit_system_gives_the_units_that_follow() -> None:
         assert derived.dimension == unit(derived.text).dimension
 
 
-@pytest.mark.parametrize(
-    ("energy", "length", "says"), [("nm", "nm", "unit of energy"), ("eV", "eV", "unit of length")]
-)
+@pytest.mark.parametrize(("energy", "length", "says"), [("nm", "nm", "unit of energy"), ("eV", "eV", "unit of length")])
 def test_a_system_of_the_wrong_units_is_refused(energy: str, length: str, says: str) -> None:
     with pytest.raises(UnitError, match=f"is not a {says}"):
         unit_system(energy, length)

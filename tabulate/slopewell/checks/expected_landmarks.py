@@ -22,7 +22,8 @@ def look(facts: PotentialFacts) -> Iterator[Finding]:
         has = "has none" if found is None else f"has {found:.7g} {unit}"
         yield Finding(
             level=ERROR,
-            says=f"The source states {name} = {stated.value:.7g} {unit} within {stated.within:.3g}; the {which} curve {has}.",
+            says=f"The source states {name} = {stated.value:.7g} {unit} within {stated.within:.3g}; "
+            f"the {which} curve {has}.",
             remedy="Check parameters, units and form against the source.",
             measured=found,
             limit=stated.value,

@@ -44,8 +44,8 @@ def look(facts: PotentialFacts) -> Iterator[Finding]:
     below = "the curve goes on smoothly to zero separation" if bounded else "the code reads outside its table"
     yield Finding(
         level=ERROR if barrier < TOO_LOW else WARNING,
-        says=f"The first row, at {place:.6g} {unit}, has only {barrier:.3g} k_B·T ({shown}): a pair gets there with a "
-        f"Boltzmann factor of {exp(-min(barrier, 700.0)) if barrier > -700 else float('inf'):.2g}, and below it {below}.",
+        says=f"The first row, at {place:.6g} {unit}, has only {barrier:.3g} k_B·T ({shown}): a pair gets there with "
+        f"a Boltzmann factor of {exp(-min(barrier, 700.0)) if barrier > -700 else float('inf'):.2g}, and below it {below}.",
         remedy="Start the grid closer in.",
         start=place,
         end=place,
@@ -59,7 +59,11 @@ def _bounded(facts: PotentialFacts, energy: float) -> bool:
     """Whether the curve stays finite and moderate down to zero separation."""
     near = np.array([1e-9, 1e-5, 1e-2]) * float(facts.potential.start)
     values = facts.potential.treated.derivatives(near, 0)[0]
-    return bool(np.isfinite(values).all()) and isfinite(energy) and bool(np.abs(values).max() < 1e3 * max(abs(energy), 1e-12))
+    return (
+        bool(np.isfinite(values).all())
+        and isfinite(energy)
+        and bool(np.abs(values).max() < 1e3 * max(abs(energy), 1e-12))
+    )
 
 
 CHECK: Check[PotentialFacts] = Check(

@@ -51,11 +51,7 @@ def look_at_table(facts: TableFacts) -> Iterator[Finding]:
     evidence = facts.evidence
     if evidence is None:
         missing = "force" if facts.rows.force is None else "energy"
-        how = (
-            "the slope of a spline through the energies"
-            if missing == "force"
-            else "the integral of the force"
-        )
+        how = "the slope of a spline through the energies" if missing == "force" else "the integral of the force"
         yield Finding(
             level=NOTE,
             says=f"The table has no {missing}, so nothing can be held against the other column.",

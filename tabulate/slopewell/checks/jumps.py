@@ -5,6 +5,7 @@ from __future__ import annotations
 from collections.abc import Iterator
 from dataclasses import dataclass
 from fractions import Fraction
+from itertools import pairwise
 
 from ..formula.balls import ball, precision, series
 from ..formula.tree import ZERO, Tree
@@ -55,7 +56,7 @@ def _treatment_edges(facts: PotentialFacts) -> set[Fraction]:
 
 def _edges(facts: PotentialFacts) -> list[Edge]:
     pieces = facts.potential.treated.within(facts.potential.start, facts.potential.end).pieces
-    return [Edge(a.end, a.tree, b.tree) for a, b in zip(pieces, pieces[1:], strict=False)]
+    return [Edge(a.end, a.tree, b.tree) for a, b in pairwise(pieces)]
 
 
 def judge(facts: PotentialFacts, edge: Edge, where: str, remedy: str) -> Iterator[Finding]:

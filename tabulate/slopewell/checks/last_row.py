@@ -26,8 +26,7 @@ def look(facts: TableFacts) -> Iterator[Finding]:
             level=ERROR if order <= needed else WARNING,
             says=f"The {column} of the last row is {step:.4g} {unit}, not zero: a pair that passes {end:.6g} "
             f"{units.length.text} sees this step{why}.",
-            remedy="Use a table that is switched or shifted to zero at its end, and the same cutoff in "
-            "the code.",
+            remedy="Use a table that is switched or shifted to zero at its end, and the same cutoff in the code.",
             start=end,
             end=end,
             measured=abs(step),

@@ -24,9 +24,7 @@ def look(facts: PotentialFacts) -> Iterator[Finding]:
             if not extra:
                 continue
             unit = facts.units.length.text
-            listing = ", ".join(f"{facts.length(r):.6g}" for r in extra[:6]) + (
-                ", …" if len(extra) > 6 else ""
-            )
+            listing = ", ".join(f"{facts.length(r):.6g}" for r in extra[:6]) + (", …" if len(extra) > 6 else "")
             yield Finding(
                 level=level,
                 says=f"The spline has {len(extra)} {kind}{'s' * (len(extra) > 1)} that the points do not "

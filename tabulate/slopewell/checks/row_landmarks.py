@@ -40,9 +40,7 @@ class RowLandmarks:
     turns: tuple[Turn, ...]
 
 
-def row_landmarks(
-    separation: Array, energy: Array, slopes: Slopes, rounding: Array | None = None
-) -> RowLandmarks:
+def row_landmarks(separation: Array, energy: Array, slopes: Slopes, rounding: Array | None = None) -> RowLandmarks:
     """Find the landmarks of rows.
 
     Parameters
@@ -63,9 +61,7 @@ def row_landmarks(
         place = _turning_point(curve, float(separation[bottom]))
         depth = -float(curve(place))
         stiffness = float(curve.deriv(2)(place))
-        rise = float(
-            max(energy[max(bottom - 1, 0)], energy[min(bottom + 1, energy.size - 1)]) - energy[bottom]
-        )
+        rise = float(max(energy[max(bottom - 1, 0)], energy[min(bottom + 1, energy.size - 1)]) - energy[bottom])
         if abs(depth + float(energy[bottom])) > rise:
             # A fit across a kink or a step: the row itself is the better landmark, and no curvature is known.
             place, depth, stiffness = float(separation[bottom]), -float(energy[bottom]), None
@@ -107,9 +103,7 @@ def local(separation: Array, column: Array, row: int) -> Chebyshev:
     """Return a polynomial through the rows around one of them, wide enough to average rounding out."""
     half = REACH * float(separation[row])
     low = min(int(np.searchsorted(separation, separation[row] - half)), max(row - LEAST_ROWS, 0))
-    high = max(
-        int(np.searchsorted(separation, separation[row] + half)), min(row + LEAST_ROWS + 1, separation.size)
-    )
+    high = max(int(np.searchsorted(separation, separation[row] + half)), min(row + LEAST_ROWS + 1, separation.size))
     stride = max((high - low) // 400, 1)
     part = slice(low, high, stride)
     count = separation[part].size

@@ -69,17 +69,12 @@ def look(facts: TableFacts) -> Iterator[Finding]:
     if best is not None and not best.failures:
         return
     if best is None or best.failures > max(3, MOST_OFF * r.size):
-        words = (
-            f"are not even in {WORDS[claimed]}, as the table claims"
-            if claimed
-            else "keep none of the usual rules"
-        )
+        words = f"are not even in {WORDS[claimed]}, as the table claims" if claimed else "keep none of the usual rules"
         steps = np.diff(r)
         yield Finding(
             level=ERROR if claimed else NOTE,
             says=f"The rows {words} (steps from {steps.min():.6g} to {steps.max():.6g} {unit}).",
-            remedy="A code that counts rows instead of reading separations needs them even: slopewell "
-            "convert --rows.",
+            remedy="A code that counts rows instead of reading separations needs them even: slopewell convert --rows.",
             start=float(r[0]),
             end=float(r[-1]),
         )

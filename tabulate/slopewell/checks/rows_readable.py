@@ -30,9 +30,7 @@ def look(facts: TableFacts) -> Iterator[Finding]:
             details={"rows": rows[:MOST_SHOWN]},
         )
     elif broken.size < 2:
-        yield Finding(
-            level=ERROR, says="There are fewer than two rows.", remedy="Is this the right file or block?"
-        )
+        yield Finding(level=ERROR, says="There are fewer than two rows.", remedy="Is this the right file or block?")
 
 
 CHECK: Check[TableFacts] = Check("rows-readable", "Every number of the rows is finite", look)

@@ -154,9 +154,7 @@ class _Strided:
                 charged = rounding if s == 1 else HIDDEN * rounding
                 yield first, value, np.where(lost, np.inf, SAFETY * widest(change, s) + charged), rounding
 
-    def _rounding(
-        self, first: int, count: int, nodes: tuple[int, ...], weights: tuple[int, ...], order: int
-    ) -> Array:
+    def _rounding(self, first: int, count: int, nodes: tuple[int, ...], weights: tuple[int, ...], order: int) -> Array:
         """Return what the rounding of all rows may do to the slope together."""
         s = self.stride
         sides = sorted({1 if node > 0 else -1 for node in nodes})

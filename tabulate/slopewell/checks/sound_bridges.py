@@ -33,9 +33,7 @@ class Crossing:
     def slopes(self) -> tuple[float, float]:
         """The slopes at both ends."""
         first, last = self.curve.pieces[0], self.curve.pieces[-1]
-        return tuple(
-            float(series(p.tree, ball(at), 1)[1].mid()) for p, at in ((first, first.start), (last, last.end))
-        )  # type: ignore[return-value]
+        return tuple(float(series(p.tree, ball(at), 1)[1].mid()) for p, at in ((first, first.start), (last, last.end)))  # type: ignore[return-value]
 
     @cached_property
     def extrema(self) -> list[float]:
@@ -64,8 +62,7 @@ class Crossing:
     def bulge(self) -> tuple[float, float]:
         """Return where and by how much the bridge leaves the band between the two curves that it joins."""
         between, before, after = (
-            curve.derivatives(self.samples, 0)[0]
-            for curve in (self.curve, self.built.before, self.built.after)
+            curve.derivatives(self.samples, 0)[0] for curve in (self.curve, self.built.before, self.built.after)
         )
         out = np.maximum(between - np.fmax(before, after), np.fmin(before, after) - between)
         out = np.where(np.isfinite(out) & (out > ROUNDING * np.abs(between)), out, 0.0)
@@ -89,8 +86,7 @@ def look(facts: PotentialFacts) -> Iterator[Finding]:
         place, size = crossing.bulge()
         height = facts.energy(size)
         bulge = (
-            f"bulges by {height:.4g} {facts.units.energy.text} beyond both curves, "
-            f"at {facts.length(place):.6g} {unit}"
+            f"bulges by {height:.4g} {facts.units.energy.text} beyond both curves, at {facts.length(place):.6g} {unit}"
             if size
             else "stays between the two curves"
         )

@@ -55,9 +55,7 @@ def _lagrange(separation: Array, column: Array, nodes: tuple[int, ...]) -> Array
         weight = np.ones_like(here)
         for other in nodes:
             if other != node:
-                weight = weight * (
-                    (here - at(separation, other)) / (at(separation, node) - at(separation, other))
-                )
+                weight = weight * ((here - at(separation, other)) / (at(separation, node) - at(separation, other)))
         total += weight * at(column, node)
     return total
 
@@ -74,9 +72,7 @@ def candidates(separation: Array, column: Array, noise: Array) -> tuple[Numbers,
     return local[np.argsort(-ratio[local])][:MOST_TRIED], values
 
 
-def energy_spikes(
-    separation: Array, energy: Array, force: Array, noise: Array, slopes_of: SlopesOf
-) -> Numbers:
+def energy_spikes(separation: Array, energy: Array, force: Array, noise: Array, slopes_of: SlopesOf) -> Numbers:
     """Return the rows whose energy is corrupted: once it is replaced, slopes and forces agree all around.
 
     Parameters

@@ -30,9 +30,7 @@ def applied(data: dict[str, Any], columns: tuple[Column, ...], chosen: Parameter
         if not NUMBER.fullmatch(number):
             says = f'"{number[:60]}" is not a number.'
             place = f"line {chosen.line}, column {column.title}"
-            problems.append(
-                Problem(place, says, "Give a number; its unit stands in the header or in the document.")
-            )
+            problems.append(Problem(place, says, "Give a number; its unit stands in the header or in the document."))
             continue
         part: Any = changed
         for key in column.path[:-1]:
@@ -47,9 +45,7 @@ def exact_json(value: Any, indent: str = "\n") -> str:
     """Return data as JSON with every decimal digit as it was written."""
     inner = f"{indent} "
     if isinstance(value, dict):
-        parts = [
-            f"{json.dumps(key, ensure_ascii=False)}: {exact_json(part, inner)}" for key, part in value.items()
-        ]
+        parts = [f"{json.dumps(key, ensure_ascii=False)}: {exact_json(part, inner)}" for key, part in value.items()]
         return f"{{{inner}{f',{inner}'.join(parts)}{indent}}}" if parts else "{}"
     if isinstance(value, list):
         return f"[{', '.join(exact_json(part, inner) for part in value)}]"

@@ -142,9 +142,7 @@ def on_cluster(job: Job, sets: Iterable[ParameterSet], address: str) -> Generato
         for future in done:
             chosen = waiting.pop(future.key)
             lost = future.status != "finished"
-            yield (
-                failed(job, chosen, f"the cluster says: {future.exception()!r}") if lost else future.result()
-            )
+            yield (failed(job, chosen, f"the cluster says: {future.exception()!r}") if lost else future.result())
             for following in islice(left, 1):
                 submit(following)
 
@@ -162,6 +160,4 @@ def _client(address: str) -> Any:
         return Client(address, timeout=PATIENCE, set_as_default=False)
     except (OSError, ValueError) as error:
         says = f'No Dask scheduler answers at "{address}": {str(error)[:120] or "it took too long"}.'
-        raise UnusableInput(
-            [Problem("--scheduler", says, "Give the address that it prints as it starts.")]
-        ) from None
+        raise UnusableInput([Problem("--scheduler", says, "Give the address that it prints as it starts.")]) from None

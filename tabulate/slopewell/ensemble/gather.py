@@ -170,9 +170,7 @@ def _write_index(group: Any, document: Document, records: Iterator[dict[str, Any
     for place, title in enumerate(titles):
         name, _, unit = title.partition(" [")
         kind = h5py.string_dtype() if place < TEXTS else np.float64
-        columns.append(
-            group.create_dataset(name, (0,), kind, maxshape=(None,), chunks=(BLOCK,), track_times=False)
-        )
+        columns.append(group.create_dataset(name, (0,), kind, maxshape=(None,), chunks=(BLOCK,), track_times=False))
         if unit:
             columns[-1].attrs["units"] = unit.removesuffix("]")
     lines = (summary.line(record, names) for record in records)

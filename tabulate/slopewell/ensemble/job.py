@@ -156,9 +156,7 @@ def _units(data: dict[str, Any]) -> dict[str, Any]:
 
 def failed(job: Job, chosen: ParameterSet, says: str) -> Outcome:
     """Return the outcome of a set whose work came to nothing for a reason that is not its own."""
-    problem = Problem(
-        "", f"The set can't be computed: {says}.", "Run the same command again: it tries this set anew."
-    )
+    problem = Problem("", f"The set can't be computed: {says}.", "Run the same command again: it tries this set anew.")
     record = Report((unusable(UnusableInput([problem]), f"{chosen.name}.json"),)).record()
     return outcome(job, chosen, record, {}, settled=False)
 
@@ -170,9 +168,7 @@ def outcome(
     record = {
         "set": chosen.name,
         "content": job.content(chosen) if settled else "",
-        "values": {
-            column.title: cell.strip() for column, cell in zip(job.columns, chosen.cells, strict=False)
-        },
+        "values": {column.title: cell.strip() for column, cell in zip(job.columns, chosen.cells, strict=False)},
         "files": sorted(files),
         "report": report,
     }

@@ -157,15 +157,11 @@ def _refuse_clashes(document: Document, places: Places, sets: Path) -> None:
     """Refuse outputs that would overwrite what they are made from, or each other."""
     if places.summary.resolve() == sets.resolve():
         says = f"The summary would overwrite {sets}."
-        raise UnusableInput(
-            [Problem("--into", says, "Choose another folder, or rename the sets.")], document.file
-        )
+        raise UnusableInput([Problem("--into", says, "Choose another folder, or rename the sets.")], document.file)
     if places.one_file is None:
         for target in targets(document, Path()):
             if target.path.parts[0] == RECORD:
-                raise UnusableInput(
-                    [Problem("output", f'"{RECORD}" is taken.', "Choose another name.")], document.file
-                )
+                raise UnusableInput([Problem("output", f'"{RECORD}" is taken.', "Choose another name.")], document.file)
 
 
 def _sweep(places: Places, store: Store) -> None:
@@ -185,9 +181,7 @@ def _counts(sets: ParameterSets, job: Job, results: Results) -> tuple[int, int]:
     return count, left
 
 
-def _crew(
-    job: Job, rest: Iterator[ParameterSet], workers: int, scheduler: str
-) -> Generator[Outcome, None, None]:
+def _crew(job: Job, rest: Iterator[ParameterSet], workers: int, scheduler: str) -> Generator[Outcome, None, None]:
     """Return the outcomes of sets, in the order in which they come."""
     if scheduler:
         return crews.on_cluster(job, rest, scheduler)

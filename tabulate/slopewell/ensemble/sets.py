@@ -126,7 +126,5 @@ def check_names(sets: ParameterSets) -> Iterator[ParameterSet]:
             except sqlite3.IntegrityError:
                 (line,) = names.execute("SELECT line FROM name WHERE name = ?", (one.name,)).fetchone()
                 says = f'The set "{one.name}" stands on line {line} already.'
-                raise UnusableInput(
-                    [Problem(f"line {one.line}", says, "Rename one.")], str(sets.path)
-                ) from None
+                raise UnusableInput([Problem(f"line {one.line}", says, "Rename one.")], str(sets.path)) from None
             yield one

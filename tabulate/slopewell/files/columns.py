@@ -23,9 +23,7 @@ COMMENTS = ("#", "!", ";", "//", "@")
 PLAIN = b"0123456789+-.eE \t\r\n"
 MARKS = (b"\xef\xbb\xbf", b"\xff\xfe", b"\xfe\xff")
 """Byte order marks."""
-NUMBER = re.compile(
-    r"[+-]?(?:\d+\.?\d*|\.\d+)(?:[eEdD][+-]?\d+|[+-]\d+)?|[+-]?(?:nan|inf|infinity)", re.IGNORECASE
-)
+NUMBER = re.compile(r"[+-]?(?:\d+\.?\d*|\.\d+)(?:[eEdD][+-]?\d+|[+-]\d+)?|[+-]?(?:nan|inf|infinity)", re.IGNORECASE)
 SPLIT = re.compile(r"\s*[,;]\s*|\s+")
 INLINE_COMMENT = re.compile(r"\s*(?:#|!|//).*$")
 FORTRAN = re.compile(r"(?<=[\d.])(?:[dD]|(?=[+-]))(?=[+-]?\d)")
@@ -56,9 +54,7 @@ def check_names(names: Sequence[str]) -> None:
         if name not in QUANTITIES
     ]
     doubled = sorted({name for name in names if name != "skip" and names.count(name) > 1})
-    problems += [
-        Problem("--columns", f'"{name}" stands twice.', "Call one of them skip.") for name in doubled
-    ]
+    problems += [Problem("--columns", f'"{name}" stands twice.', "Call one of them skip.") for name in doubled]
     if not {"separation", "separation-squared"} & set(names):
         problems.append(Problem("--columns", "No column holds the separation.", "Name one separation."))
     if not {"energy", "force", "slope", "force-over-separation"} & set(names):
@@ -119,9 +115,7 @@ def _plain(path: Path, raw: bytes, count: int) -> Array | None:
     if raw.startswith(MARKS):
         return None
     start = 0
-    while (end := raw.find(b"\n", start)) >= 0 and not _is_row(
-        line := raw[start:end].decode("latin-1"), count
-    ):
+    while (end := raw.find(b"\n", start)) >= 0 and not _is_row(line := raw[start:end].decode("latin-1"), count):
         if _is_like_row(line) and len(_tokens(line)) == count:
             return None
         start = end + 1
@@ -132,9 +126,7 @@ def _plain(path: Path, raw: bytes, count: int) -> Array | None:
     try:
         head = raw.count(b"\n", 0, start)
         # From a file by its name is the fastest way to read that NumPy has.
-        numbers = np.loadtxt(
-            path, skiprows=head, delimiter=separator, comments=None, ndmin=2, encoding="latin-1"
-        )
+        numbers = np.loadtxt(path, skiprows=head, delimiter=separator, comments=None, ndmin=2, encoding="latin-1")
     except ValueError:
         return None
     # An empty line gives no row: then the rows may be several blocks.
@@ -213,9 +205,7 @@ def _without_head(run: Block, lines: Sequence[str], count: int) -> Block:
 def _choose(found: list[Block], block: int | None, path: Path) -> Block:
     if not found:
         says = "It holds no rows of numbers."
-        raise UnusableInput(
-            [Problem("", says, "Is it a table? A document ends in .toml or .json.")], str(path)
-        )
+        raise UnusableInput([Problem("", says, "Is it a table? A document ends in .toml or .json.")], str(path))
     if block is not None and not 1 <= block <= len(found):
         says = f"There is no block {block}; the file holds {len(found)}."
         raise UnusableInput([Problem("--block", says, _listing(found))], str(path))
@@ -227,8 +217,7 @@ def _choose(found: list[Block], block: int | None, path: Path) -> Block:
 
 def _listing(found: list[Block]) -> str:
     shown = [
-        f"{number}: lines {block.first} to {block.last}"
-        + (f' after "{block.head[:40]}"' if block.head else "")
+        f"{number}: lines {block.first} to {block.last}" + (f' after "{block.head[:40]}"' if block.head else "")
         for number, block in enumerate(found[:12], start=1)
     ]
     more = f"; and {len(found) - 12} more" if len(found) > 12 else ""
@@ -257,9 +246,7 @@ def _number(token: str, number: int, line: str, path: Path) -> float:
         if NUMBER.fullmatch(token):
             return float(FORTRAN.sub("e", token))
         at = line.find(token) + 1
-        problem = _problem(
-            number, at, f'"{token[:40]}" is no number.', "Mend that row, or take it out.", line
-        )
+        problem = _problem(number, at, f'"{token[:40]}" is no number.', "Mend that row, or take it out.", line)
         raise UnusableInput([problem], str(path)) from None
 
 

@@ -52,7 +52,11 @@ def _metadata(table: Table, rows: Rows, path: Path) -> dict[str, Any]:
         "force": table.units.force,
         "curvature": table.units.stiffness,
     }
-    stored = provenance(table) | {"interaction": rows.name, "certificate": rows.certificate, "derived": list(rows.derived)}
+    stored = provenance(table) | {
+        "interaction": rows.name,
+        "certificate": rows.certificate,
+        "derived": list(rows.derived),
+    }
     stored |= {key: getattr(rows, key) for key in RULES}
     return {
         "@context": ["http://www.w3.org/ns/csvw", {"@language": "en"}],
@@ -93,7 +97,9 @@ def read(path: Path) -> Table:
         says = f"The metadata file {sidecar(path).name} is missing beside it."
         raise UnusableInput([Problem("", says, "Name columns and units instead.")], str(path)) from None
     except (OSError, ValueError, KeyError, TypeError) as error:
-        raise UnusableInput([Problem("", f"The file can't be read: {error}.", "Check both files.")], str(path)) from None
+        raise UnusableInput(
+            [Problem("", f"The file can't be read: {error}.", "Check both files.")], str(path)
+        ) from None
     numbers = _numbers(text, list(described), path)
     stored = {key.removeprefix(NAMESPACE): value for key, value in metadata.items() if key.startswith(NAMESPACE)}
     rows = Rows(

@@ -73,7 +73,11 @@ def _check(data: Any, path: Path) -> None:
 
 def _rows(name: str, record: dict[str, Any], path: Path) -> Rows:
     try:
-        columns = {k: np.array(record[k], dtype=np.float64) for k in ("separation", "energy", "force", "curvature") if k in record}
+        columns = {
+            k: np.array(record[k], dtype=np.float64)
+            for k in ("separation", "energy", "force", "curvature")
+            if k in record
+        }
     except (ValueError, TypeError):
         raise _refuse(path, f"interactions.{name}", "A column holds something that is no number.") from None
     if len({column.shape for column in columns.values()}) != 1 or columns["separation"].ndim != 1:

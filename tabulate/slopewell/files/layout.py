@@ -23,7 +23,18 @@ from .quantities import columns_of, rows_of
 Array = NDArray[np.float64]
 CHUNK = 4096
 """Rows formatted at a time: one large % format is the fastest that plain Python has."""
-TEXT_FIELDS = ("title", "source", "name", "a", "b", "energy_unit", "length_unit", "force_unit", "spacing", "interpolation")
+TEXT_FIELDS = (
+    "title",
+    "source",
+    "name",
+    "a",
+    "b",
+    "energy_unit",
+    "length_unit",
+    "force_unit",
+    "spacing",
+    "interpolation",
+)
 NUMBER_FIELDS = ("rows", "first", "last")
 
 
@@ -121,7 +132,9 @@ def _field_problems(line: str, at: str, number: int | None) -> list[Problem]:
         if name not in (*TEXT_FIELDS, *NUMBER_FIELDS):
             problems.append(Problem(at, f"{{{name}}} is not known.", f"Known: {known}.", line=number))
         elif spec and not (name in ("first", "last") and re.fullmatch(r"[+ 0]?\d{0,3}(\.\d{1,2})?[eEfFgG]", spec)):
-            problems.append(Problem(at, f"The format {spec} is not taken for {name}.", "Use one like .6f.", line=number))
+            problems.append(
+                Problem(at, f"The format {spec} is not taken for {name}.", "Use one like .6f.", line=number)
+            )
     return problems
 
 
@@ -201,7 +214,9 @@ def _numbers(body: list[str], layout: Layout, path: Path) -> Array:
     try:
         numbers = np.loadtxt(io.StringIO("\n".join(body)), delimiter=separator, ndmin=2, comments=None)
     except ValueError as error:
-        raise UnusableInput([Problem("", f"A row can't be read: {error}.", "Does the layout fit?")], str(path)) from None
+        raise UnusableInput(
+            [Problem("", f"A row can't be read: {error}.", "Does the layout fit?")], str(path)
+        ) from None
     if numbers.shape[1] != len(layout.columns):
         says = f"Rows have {numbers.shape[1]} columns, the layout describes {len(layout.columns)}."
         raise UnusableInput([Problem("", says, "Name every column; skip those without meaning.")], str(path))

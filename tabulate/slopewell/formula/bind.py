@@ -47,8 +47,7 @@ class _Binder:
         with precision():
             self.named: dict[str, Tree] = {"pi": constant(arb.pi())}
         self.named |= {
-            name: Number(given) if isinstance(given, Fraction) else constant(given)
-            for name, given in values.items()
+            name: Number(given) if isinstance(given, Fraction) else constant(given) for name, given in values.items()
         }
         self.shared: dict[Tree, Tree] = {}
 
@@ -98,10 +97,7 @@ def fold(function: str, arguments: tuple[Tree, ...]) -> Tree:
     """Return the number that a function of numbers is: exact if it is a rational of moderate size."""
     if all(isinstance(argument, Number) for argument in arguments):
         exact = _exact(function, [argument.value for argument in arguments])  # type: ignore[union-attr]
-        if (
-            exact is not None
-            and max(exact.numerator.bit_length(), exact.denominator.bit_length()) < EXACT_BITS
-        ):
+        if exact is not None and max(exact.numerator.bit_length(), exact.denominator.bit_length()) < EXACT_BITS:
             return Number(exact)
     return constant(value(Apply(function, arguments)))
 

@@ -8,6 +8,7 @@ from __future__ import annotations
 
 from dataclasses import dataclass
 from fractions import Fraction
+from itertools import pairwise
 
 from .balls import Ball, Undecided, ball, enclose, series
 from .bind import simplify
@@ -65,7 +66,7 @@ def _resolve(tree: Tree, start: Fraction, end: Fraction) -> tuple[Piece, ...]:
     points = _turning_points(gap, start, end)
     edges = [start, *points, end]
     pieces: list[Piece] = []
-    for low, high in zip(edges, edges[1:], strict=False):
+    for low, high in pairwise(edges):
         positive = _positive(gap, (low + high) / 2, high - low)
         settled = replace(tree, choice, answers[positive])
         closed = True if high == end else answers[_at(choice, gap)] is answers[positive]

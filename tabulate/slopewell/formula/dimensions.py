@@ -15,9 +15,7 @@ Dimension = Any
 """pint's ``UnitsContainer`` of a quantity's dimensionality."""
 
 
-def dimension(
-    tree: Tree, text: str, known: Mapping[str, Dimension], values: Mapping[str, Fraction]
-) -> Dimension:
+def dimension(tree: Tree, text: str, known: Mapping[str, Dimension], values: Mapping[str, Fraction]) -> Dimension:
     """Return the dimension of a formula.
 
     Parameters
@@ -90,9 +88,7 @@ class _Reading:
                 total = found
             elif found is not ANY and found != total:
                 says = f"This operator joins {describe(total)} and {describe(found)}."
-                raise FormulaError(
-                    self.text, sign, says, "Both sides of + and - must have the same dimension."
-                )
+                raise FormulaError(self.text, sign, says, "Both sides of + and - must have the same dimension.")
         return total
 
     def same(self, first: Tree, second: Tree, place: Place, verb: str) -> Dimension:
@@ -123,9 +119,7 @@ class _Reading:
         fixed = self.number(exponent)
         if fixed is None:
             says = f"A base that is {describe(found)} needs a fixed number as its exponent."
-            raise FormulaError(
-                self.text, tree.signs[0], says, "Divide the base by a length, say (sigma/r)^n."
-            )
+            raise FormulaError(self.text, tree.signs[0], says, "Divide the base by a length, say (sigma/r)^n.")
         return found ** (int(fixed) if fixed.denominator == 1 else fixed)
 
     def number(self, tree: Tree) -> Fraction | None:

@@ -23,9 +23,7 @@ LARGEST_EXPONENT = 1000
 """Size up to which a literal exponent is taken."""
 
 FUNCTIONS = {
-    **dict.fromkeys(
-        ("exp", "log", "sqrt", "erf", "erfc", "sin", "cos", "tan", "sinh", "cosh", "tanh", "abs"), 1
-    ),
+    **dict.fromkeys(("exp", "log", "sqrt", "erf", "erfc", "sin", "cos", "tan", "sinh", "cosh", "tanh", "abs"), 1),
     "min": 2,
     "max": 2,
     "tang_toennies": 2,
@@ -156,9 +154,7 @@ def _syntax(text: str, python: str, origin: list[int]) -> ast.expr:
     except SyntaxError as error:
         # Python gives no place where the text ends too early.
         position = origin[min((error.offset or len(origin)) - 1, len(origin) - 1)]
-        says = (
-            "The formula can't be read from here on: an operator, a number, a name or a bracket is missing."
-        )
+        says = "The formula can't be read from here on: an operator, a number, a name or a bracket is missing."
         raise FormulaError(
             text, (position, position + 1), says, "Write every product with *, close every bracket."
         ) from None
@@ -237,9 +233,7 @@ class _Parser:
         start, end = self.place(node)
         literal = self.text[start:end]
         if not LITERAL.fullmatch(literal):
-            raise self.refuse(
-                node, "This is not a number of the formula language.", "Write it like 12, 0.5 or 1.5e-3."
-            )
+            raise self.refuse(node, "This is not a number of the formula language.", "Write it like 12, 0.5 or 1.5e-3.")
         return Number(Fraction(literal), (start, end))
 
     def name(self, node: ast.Name) -> Tree:
@@ -288,9 +282,7 @@ class _Parser:
             raise self.refuse(node.func, f'There is no function "{name}".', nearest(name, FUNCTIONS))
         wanted, given = FUNCTIONS[name], len(node.args)
         if node.keywords:
-            raise self.refuse(
-                node.keywords[0], "An argument has no name here.", f"Write {name}(…) with values."
-            )
+            raise self.refuse(node.keywords[0], "An argument has no name here.", f"Write {name}(…) with values.")
         if given != wanted:
             says = f"{name} takes {wanted} argument{'s' if wanted > 1 else ''}, not {given}."
             raise self.refuse(node, says, f"Mend {name}(…).")
@@ -317,6 +309,4 @@ class _Parser:
         if comparison is None:
             raise self.refuse(condition, "Only < <= > >= compare.", "Write where(a < b, x, y).")
         left, right = self.read(condition.left), self.read(condition.comparators[0])
-        return Choice(
-            comparison, left, right, self.read(node.args[1]), self.read(node.args[2]), self.place(node)
-        )
+        return Choice(comparison, left, right, self.read(node.args[1]), self.read(node.args[2]), self.place(node))

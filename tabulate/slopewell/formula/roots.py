@@ -50,9 +50,7 @@ class Roots:
         return not self.undecided
 
 
-def roots(
-    tree: Tree, start: Fraction, end: Fraction, derivative: int, enclosures: Enclosures | None = None
-) -> Roots:
+def roots(tree: Tree, start: Fraction, end: Fraction, derivative: int, enclosures: Enclosures | None = None) -> Roots:
     """Find the roots of the k-th derivative of a tree strictly between two separations.
 
     A zero at an end (a potential that leaves smoothly at its cutoff) is divided out first.

@@ -125,9 +125,7 @@ class Reading:
             case Number():
                 return [self.number(tree.value)]
             case Constant():
-                return [
-                    self.number(fraction(tree.ball)) if tree.ball.is_finite() else self.number(0) * np.nan
-                ]
+                return [self.number(fraction(tree.ball)) if tree.ball.is_finite() else self.number(0) * np.nan]
             case Name():
                 return self.r
             case Choice():

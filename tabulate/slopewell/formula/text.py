@@ -27,9 +27,7 @@ def _piece(tree: Tree) -> tuple[str, int]:
         case Name():
             return tree.name, ATOM
         case Choice():
-            left, right, then, otherwise = (
-                write(part) for part in (tree.left, tree.right, tree.then, tree.otherwise)
-            )
+            left, right, then, otherwise = (write(part) for part in (tree.left, tree.right, tree.then, tree.otherwise))
             return f"where({left} {tree.comparison} {right}, {then}, {otherwise})", ATOM
         case Apply(function="+"):
             return _sum(tree), SUM

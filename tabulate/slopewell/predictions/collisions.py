@@ -92,11 +92,7 @@ def branches(curve: EnergyCurve, energy: float, grid: tuple[Array, Array]) -> li
             )
         else:
             low, high = r[max(first - 2, 0)], r[min(first + 2, r.size - 1)]
-            left = (
-                brentq(growth, low, high, xtol=NEAR_ENOUGH)
-                if growth(low) < 0 < growth(high)
-                else float(r[first])
-            )
+            left = brentq(growth, low, high, xtol=NEAR_ENOUGH) if growth(low) < 0 < growth(high) else float(r[first])
         if found:
             last = ends[number - 1]
             level = square(left)
@@ -201,9 +197,7 @@ def look(system: System, setting: Setting) -> Iterator[Figure]:
             at = {"temperature": temperature}
             for (order, power), values in found.items():
                 value = float(values[index])
-                yield Figure(
-                    curve.name, "collision-integral", value, "1", {"order": f"{order},{power}", **at}
-                )
+                yield Figure(curve.name, "collision-integral", value, "1", {"order": f"{order},{power}", **at})
             if mass is not None:
                 spread = diffusion(mass, temperature, diameter, float(found[1, 1][index]))
                 yield Figure(curve.name, "diffusion-coefficient", spread, "cm^2/s", at)

@@ -68,9 +68,7 @@ def _polynomials(curve: EnergyCurve, knots: Array) -> list[Array]:
         size = np.abs(coefficients).max(axis=0)
         last = int(np.flatnonzero(size > 1e-12 * size.max())[-1]) if size.max() else 0
         if last < DEGREE - 1:
-            coefficients = (
-                one[:, _spread(last)] @ np.linalg.inv(np.vander(nodes[_spread(last)], increasing=True)).T
-            )
+            coefficients = one[:, _spread(last)] @ np.linalg.inv(np.vander(nodes[_spread(last)], increasing=True)).T
         found.append(np.ascontiguousarray(coefficients))
     return found
 

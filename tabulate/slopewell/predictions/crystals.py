@@ -121,9 +121,7 @@ def smallest_stiffness(elastic: Array) -> float:
     return float(np.linalg.eigvalsh(0.5 * (elastic + elastic.T))[0])
 
 
-def ionic(
-    system: System, names: tuple[str, ...]
-) -> tuple[tuple[float, ...], dict[tuple[int, int], EnergyCurve]]:
+def ionic(system: System, names: tuple[str, ...]) -> tuple[tuple[float, ...], dict[tuple[int, int], EnergyCurve]]:
     """Return the charges to be summed apart, and the curves without their part.
 
     Charges that a curve falls off by, as q·q/r, are taken out of it; else those of the species count.

@@ -112,9 +112,7 @@ class EnergyCurve:
         half = min(WINDOW * r, r - self.start, self.reach - r)
         x = np.cos(np.pi * (np.arange(81) + 0.5) / 81)
         fit = np.polynomial.Polynomial(
-            np.polynomial.chebyshev.cheb2poly(
-                np.polynomial.chebyshev.chebfit(x, self.energy(r + half * x), 8)
-            )
+            np.polynomial.chebyshev.cheb2poly(np.polynomial.chebyshev.chebfit(x, self.energy(r + half * x), 8))
         )
         return np.array([fit.deriv(k)(0.0) / half**k if k else fit(0.0) for k in range(order + 1)])
 
@@ -161,9 +159,7 @@ class EnergyCurve:
             coulomb = [product / r, -product / r**2, 2 * product / r**3]
             return self.derivatives(r, order) - np.array(coulomb[: order + 1])
 
-        return EnergyCurve(
-            self.name, derivatives, self.start, self.end, self.reach, exact=False, breaks=self.breaks
-        )
+        return EnergyCurve(self.name, derivatives, self.start, self.end, self.reach, exact=False, breaks=self.breaks)
 
     @cached_property
     def charge_product(self) -> float:
@@ -246,13 +242,11 @@ def _sampled(curve: EnergyCurve) -> EnergyCurve:
         far = x > stop
         if far.any() and not isinf(power):
             value = energy[-1] * (stop / x[far]) ** power
-            result[:, far] = np.array(
-                [value, -power * value / x[far], power * (power + 1) * value / x[far] ** 2]
-            )[: order + 1]
+            result[:, far] = np.array([value, -power * value / x[far], power * (power + 1) * value / x[far] ** 2])[
+                : order + 1
+            ]
         elif far.any():
             result[:, far] = 0.0
         return result
 
-    return EnergyCurve(
-        curve.name, derivatives, curve.start, curve.end, curve.reach, exact=False, breaks=curve.breaks
-    )
+    return EnergyCurve(curve.name, derivatives, curve.start, curve.end, curve.reach, exact=False, breaks=curve.breaks)

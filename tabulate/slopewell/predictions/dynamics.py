@@ -68,7 +68,7 @@ class Neighbours:
         How far the curves reach, in ångström; the box must be more than twice that and a skin.
     """
 
-    def __init__(self, particles: Particles, reach: float) -> None:  # noqa: D107 -- the class says it
+    def __init__(self, particles: Particles, reach: float) -> None:
         from scipy.spatial import cKDTree
 
         self.skin = min(SKIN * reach, 0.499 * particles.box - reach)
@@ -163,7 +163,7 @@ class Motion:
     W. C. Swope, H. C. Andersen, P. H. Berens and K. R. Wilson, J. Chem. Phys. 76, 637 (1982).
     """
 
-    def __init__(self, particles: Particles, fields: Sequence[Field], step: float) -> None:  # noqa: D107
+    def __init__(self, particles: Particles, fields: Sequence[Field], step: float) -> None:
         self.particles, self.fields, self.step = particles, fields, step
         self.reach = max(curve.reach for field in fields for curve in field.values())
         self.near = Neighbours(particles, self.reach)

@@ -38,7 +38,7 @@ class Charges:
     P. P. Ewald, Ann. Phys. 369, 253 (1921). Energies are of a cell, in e²/4πε₀ over the lattice constant.
     """
 
-    def __init__(self, structure: Structure, charges: tuple[float, ...]) -> None:  # noqa: D107 -- the class says it
+    def __init__(self, structure: Structure, charges: tuple[float, ...]) -> None:
         self.structure = structure
         self.cell = np.array(structure.cell)
         self.places = np.array([place for _, place in structure.atoms])

@@ -85,9 +85,7 @@ def take_apart(rows: Rows, units: UnitSystem, curve: EnergyCurve | None, rule: s
 
     energy, slope = np.abs(exact.derivatives(np.array([end]), 1)[:, 0])
     has_step = energy > STEP * scale or slope * end > STEP * scale
-    return Parts(
-        table, read(rounded), read(clean), reference, (end - gap, end + gap) if has_step else (inf, 0.0)
-    )
+    return Parts(table, read(rounded), read(clean), reference, (end - gap, end + gap) if has_step else (inf, 0.0))
 
 
 def _end(rows: Rows, knots: Array) -> tuple[float, float]:
@@ -121,9 +119,7 @@ def _smooth(rows: Rows, units: UnitSystem, knots: Array, end: float, scale: floa
         if best is None or miss < 0.5 * best[0]:
             best = (miss, spline)
     if best is None or best[0] > ROUGH:
-        plain = Rows(
-            rows.name, rows.separation[knots <= end], rows.energy[knots <= end], None, ends="not-a-knot"
-        )
+        plain = Rows(rows.name, rows.separation[knots <= end], rows.energy[knots <= end], None, ends="not-a-knot")
         return from_rows(plain, units, "cubic-spline")
     readers = [best[1], best[1].derivative(), best[1].derivative(2)]
 

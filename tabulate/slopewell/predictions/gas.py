@@ -31,11 +31,9 @@ class Gas:
         If the curve falls no faster than 1/r³, so that no virial coefficient exists.
     """
 
-    def __init__(self, curve: EnergyCurve) -> None:  # noqa: D107 -- the class says it
+    def __init__(self, curve: EnergyCurve) -> None:
         if curve.tail_power <= 3.01:
-            raise ValueError(
-                f"{curve.name} falls as 1/r^{curve.tail_power:.3g}: it has no second virial coefficient"
-            )
+            raise ValueError(f"{curve.name} falls as 1/r^{curve.tail_power:.3g}: it has no second virial coefficient")
         self.r, self.weight = radial(curve.start, curve.end, curve.reach, curve.breaks)
         with np.errstate(all="ignore"):
             self.energy, self.slope = curve.all(self.r, 1)

@@ -41,7 +41,7 @@ class Lattice:
         One a pair of species numbers.
     """
 
-    def __init__(self, structure: Structure, curves: Curves) -> None:  # noqa: D107 -- the class says it
+    def __init__(self, structure: Structure, curves: Curves) -> None:
         self.structure, self.curves = structure, curves
         self.nearest = structure.nearest
         self._hessians: dict[float, Hessian] = {}
@@ -78,9 +78,7 @@ class Lattice:
                 kinds = [kind for kind, _ in self.structure.atoms]
                 ordered = kinds.count(first) * kinds.count(second) * (1 if first == second else 2)
                 density = ordered / (self.structure.volume * a**3)
-                totals[: order + 1] += [
-                    0.5 * density * np.sum(measure * x**k * values[k]) for k in range(order + 1)
-                ]
+                totals[: order + 1] += [0.5 * density * np.sum(measure * x**k * values[k]) for k in range(order + 1)]
         return totals
 
     def _beyond(self, curve: EnergyCurve, a: float, order: int = 2) -> tuple[Array, Array, Array]:
@@ -95,9 +93,7 @@ class Lattice:
         r, weight = np.concatenate([r, far]), np.concatenate([weight, far_weight])
         return r, curve.all(r, order), 4 * pi * r**2 * weight * (1 - handover(r / unit))
 
-    def within(
-        self, i: int, j: int, vectors: Array, a: float
-    ) -> tuple[EnergyCurve, NDArray[np.bool_], Array]:
+    def within(self, i: int, j: int, vectors: Array, a: float) -> tuple[EnergyCurve, NDArray[np.bool_], Array]:
         """Return the curve of two atoms, which vectors it reaches, and their lengths in ångström."""
         atoms = self.structure.atoms
         first, second = sorted((atoms[i][0], atoms[j][0]))
@@ -151,7 +147,7 @@ class Hessian:
         The stiffness of each atom's place when all others are held.
     """
 
-    def __init__(self, strain: Array, mixed: Array, inner: Array, own: Array) -> None:  # noqa: D107 -- the class says it
+    def __init__(self, strain: Array, mixed: Array, inner: Array, own: Array) -> None:
         self.strain, self.mixed, self.inner, self.own = strain, mixed, inner, own
 
     @classmethod

@@ -71,9 +71,7 @@ STRUCTURES = (
     Structure("sc", SIMPLE, ((0, ORIGIN),), (0.5, 0.0, 0.0)),
     Structure("bcc", BODY, ((0, ORIGIN),), (1.0, 0.0, 0.0)),
     Structure("fcc", FACE, ((0, ORIGIN),), (1.0, 0.0, 0.0)),
-    Structure(
-        "hcp", HEXAGONAL, ((0, ORIGIN), (0, (0.5, 0.5 / sqrt(3), IDEAL / 2))), (0.0, 0.0, 0.5 / IDEAL), False
-    ),
+    Structure("hcp", HEXAGONAL, ((0, ORIGIN), (0, (0.5, 0.5 / sqrt(3), IDEAL / 2))), (0.0, 0.0, 0.5 / IDEAL), False),
     Structure("diamond", FACE, ((0, ORIGIN), (0, QUARTER)), (1.0, 0.0, 0.0)),
     Structure("rocksalt", FACE, ((0, ORIGIN), (1, (0.5, 0.0, 0.0))), (1.0, 0.0, 0.0)),
     Structure("caesium-chloride", SIMPLE, ((0, ORIGIN), (1, (0.5, 0.5, 0.5))), (0.5, 0.0, 0.0)),

@@ -60,12 +60,8 @@ def error_along(facts: PotentialFacts, start: float) -> ErrorAlong | None:
     bounds = []
     for low, high in pairwise(edges):
         part = replace(grid, start=Fraction(float(r[low])), end=Fraction(float(r[high])), rows=high - low + 1)
-        found = ErrorBounds(facts.potential.treated, part).bound(
-            high - low + 1, grid.spacing, grid.interpolation
-        )
+        found = ErrorBounds(facts.potential.treated, part).bound(high - low + 1, grid.spacing, grid.interpolation)
         bounds.append((found.energy, found.force))
     units = facts.units
     energy, force = np.array(bounds).T
-    return ErrorAlong(
-        r[edges[1:]] / size, energy / float(units.energy.factor), force / float(units.force.factor)
-    )
+    return ErrorAlong(r[edges[1:]] / size, energy / float(units.energy.factor), force / float(units.force.factor))

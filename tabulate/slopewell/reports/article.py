@@ -46,16 +46,12 @@ def _formula(drawing: Drawing) -> Markup:
     if stated is None or not stated.formula:
         return Markup("")
     origin = f"{stated.title}. {stated.source}" if stated.title else "As the document states it"
-    return tag(
-        "div", Markup(formula_markup(stated.formula)), tag("p", origin, class_="origin"), class_="formula"
-    )
+    return tag("div", Markup(formula_markup(stated.formula)), tag("p", origin, class_="origin"), class_="formula")
 
 
 def _figure(drawing: Drawing, number: int, systems: Sequence[UnitSystem]) -> Markup:
     prefix = f"pair-{number}"
-    panels = [
-        panel_markup(panel, drawing, systems) for panel in [*panels_of(drawing), *bound_panels(drawing)]
-    ]
+    panels = [panel_markup(panel, drawing, systems) for panel in [*panels_of(drawing), *bound_panels(drawing)]]
     slider = tag(
         "input",
         type="range",
@@ -73,9 +69,7 @@ def _figure(drawing: Drawing, number: int, systems: Sequence[UnitSystem]) -> Mar
         tag("div", *panels, tag("i", class_="cursor", hidden=True), class_="stack"),
         separation_axis(drawing, systems),
         slider,
-        tag(
-            "output", "Point at the curves, or use the arrow keys.", for_=f"{prefix}-place", class_="readout"
-        ),
+        tag("output", "Point at the curves, or use the arrow keys.", for_=f"{prefix}-place", class_="readout"),
         tag("figcaption", _described(drawing)),
         class_="curves",
         data_drawing=number,
@@ -100,9 +94,7 @@ def _described(drawing: Drawing) -> str:
     units, known = drawing.units, drawing.landmarks
     energy, length = unit_text(units.energy.text), unit_text(units.length.text)
     words = [f"Energy and force of {drawing.name} against separation."]
-    bottom, depth, crossing = (
-        known.get(key) for key in ("equilibrium_separation", "well_depth", "zero_crossing")
-    )
+    bottom, depth, crossing = (known.get(key) for key in ("equilibrium_separation", "well_depth", "zero_crossing"))
     if bottom is not None and depth is not None:
         words.append(
             f"The pair is pushed apart below {number_text(bottom, 4)} {length} and pulled together beyond, "
@@ -118,14 +110,10 @@ def _described(drawing: Drawing) -> str:
 
 
 def _facts(drawing: Drawing) -> Iterator[Markup]:
-    rows = [
-        tag("tr", tag("th", label, scope="row"), tag("td", value)) for label, value in _landmark_rows(drawing)
-    ]
+    rows = [tag("tr", tag("th", label, scope="row"), tag("td", value)) for label, value in _landmark_rows(drawing)]
     if rows:
         yield tag("table", tag("caption", "Landmarks"), tag("tbody", *rows))
-    rows = [
-        tag("tr", tag("th", label, scope="row"), tag("td", value)) for label, value in _certified(drawing)
-    ]
+    rows = [tag("tr", tag("th", label, scope="row"), tag("td", value)) for label, value in _certified(drawing)]
     if rows:
         yield tag("table", tag("caption", "Reading between rows"), tag("tbody", *rows))
     stated = drawing.stated

@@ -126,9 +126,7 @@ def _zsh(commands: list[Command]) -> str:
 def _fish(commands: list[Command]) -> str:
     lines = ["complete -c slopewell -e"]
     for command in commands:
-        lines.append(
-            f"complete -c slopewell -n __fish_use_subcommand -f -a {command.name} -d {_quoted(command.help)}"
-        )
+        lines.append(f"complete -c slopewell -n __fish_use_subcommand -f -a {command.name} -d {_quoted(command.help)}")
         here = f"complete -c slopewell -n '__fish_seen_subcommand_from {command.name}'"
         lines += [f"{here} -l {option[2:]} -d {_quoted(text)}" for option, text in command.options]
         if command.words:

@@ -94,9 +94,7 @@ def _canvas(drawing: Drawing, columns: int, *, plain: bool) -> list[list[str]]:
                 row[column] = "*" if plain else chr(0x2800 + int((cell * DOTS).sum()))
     for number, mark in enumerate(drawing.marks, 1):
         if mark.panel == "energy":
-            canvas[_line(mark.value, drawing.view.energy)][_column(mark.separation, drawing, columns)] = str(
-                number
-            )
+            canvas[_line(mark.value, drawing.view.energy)][_column(mark.separation, drawing, columns)] = str(number)
     return canvas
 
 

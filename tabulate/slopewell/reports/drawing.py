@@ -123,11 +123,7 @@ def potential_drawing(
         return energy / energy_size, 0.0 - slope / force_size
 
     cutoff = potential.cutoff
-    places = (
-        [None if place is None else float(place) / size for place in (cutoff.at, cutoff.start)]
-        if cutoff
-        else []
-    )
+    places = [None if place is None else float(place) / size for place in (cutoff.at, cutoff.start)] if cutoff else []
     at, switch_start = places or (None, None)
     landmarks = landmarks_in(record, potential.name, units)
     coarse = np.linspace(float(potential.start) / size, float(potential.end) / size, 2001)
@@ -187,9 +183,7 @@ def table_drawings(table: Table, record: Mapping[str, Any]) -> tuple[Drawing, ..
     return tuple(rows_drawing(rows, table.units, record, stated.get(rows.name)) for rows in known)
 
 
-def rows_drawing(
-    rows: Rows, units: UnitSystem, record: Mapping[str, Any], stated: Stated | None = None
-) -> Drawing:
+def rows_drawing(rows: Rows, units: UnitSystem, record: Mapping[str, Any], stated: Stated | None = None) -> Drawing:
     """Return the drawing of the rows of one interaction."""
     rows = _in_order(rows)
     size = float(units.length.factor)

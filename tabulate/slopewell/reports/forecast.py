@@ -74,8 +74,7 @@ def _overview(rows: Sequence[Row]) -> Iterator[str]:
     """Yield a line a pair, and the crystal of lowest energy of each subject that forms one."""
     units = {row["quantity"]: row["unit"] for row in rows}
     by_subject = {
-        name: [row for row in rows if row["subject"] == name]
-        for name in dict.fromkeys(r["subject"] for r in rows)
+        name: [row for row in rows if row["subject"] == name] for name in dict.fromkeys(r["subject"] for r in rows)
     }
     yield ""
     yield f"  {'pair':<10}" + "".join(f"{head:>14}" for _, head in PAIR) + f"{'table-curve':>14}"
@@ -85,9 +84,7 @@ def _overview(rows: Sequence[Row]) -> Iterator[str]:
         if pair:
             cells = [number(_either(pair, name)) for name, _ in PAIR]
             yield f"  {subject:<10}" + "".join(f"{cell:>14}" for cell in (*cells, _farthest(pair)))
-    bound = {
-        name: _deepest(own) for name, own in by_subject.items() if any("structure" in row for row in own)
-    }
+    bound = {name: _deepest(own) for name, own in by_subject.items() if any("structure" in row for row in own)}
     if bound:
         yield ""
         yield f"  {'crystal':<28}" + "".join(f"{head:>11}" for _, head in CRYSTAL) + "  shear"
@@ -96,11 +93,7 @@ def _overview(rows: Sequence[Row]) -> Iterator[str]:
         head = f"{subject} {own[0]['structure']}"
         cells = [number(_either(own, name)) for name, _ in CRYSTAL]
         stands = (_either(own, "smallest-stiffness") or 0) > 0
-        yield (
-            f"  {head:<28}"
-            + "".join(f"{cell:>11}" for cell in cells)
-            + f"  {'stands' if stands else 'gives way'}"
-        )
+        yield (f"  {head:<28}" + "".join(f"{cell:>11}" for cell in cells) + f"  {'stands' if stands else 'gives way'}")
     yield ""
     yield "  One line a pair, and its crystal of lowest energy; --subject NAME or --json shows everything."
 
@@ -204,9 +197,7 @@ def _gas(rows: Sequence[Row]) -> Iterator[str]:
         own = [row for row in rows if row["temperature"] == temperature]
         (_, cells), *more = list(_both(own, PER_TEMPERATURE))
         difference = more[0][1][0] if more else "-"
-        yield f"    {temperature:<12g}" + "".join(
-            f"{cell:>14}" for cell in (cells[0], difference, *cells[1:])
-        )
+        yield f"    {temperature:<12g}" + "".join(f"{cell:>14}" for cell in (cells[0], difference, *cells[1:]))
 
 
 VERDICTS = {

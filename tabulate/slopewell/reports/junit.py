@@ -35,15 +35,11 @@ def _suite(root: Element, subject: Subject, strict: bool) -> None:
     suite = SubElement(root, "testsuite", name=_fit(subject.file))
     for problem in subject.problems:
         case = _case(suite, subject, "can be used", "")
-        error = SubElement(
-            case, "error", message=_fit(f"{problem.at}: {problem.says}" if problem.at else problem.says)
-        )
+        error = SubElement(case, "error", message=_fit(f"{problem.at}: {problem.says}" if problem.at else problem.says))
         error.text = _fit("\n".join(part for part in (problem.excerpt, f"Try: {problem.remedy}") if part))
     for interaction, check, found in _cases(subject):
         case = _case(suite, subject, check, interaction)
-        failing = [
-            finding for finding in found if finding.level == ERROR or (strict and finding.level == WARNING)
-        ]
+        failing = [finding for finding in found if finding.level == ERROR or (strict and finding.level == WARNING)]
         for finding in failing[:1]:
             failure = SubElement(case, "failure", type=finding.mistake or check, message=_fit(finding.says))
             failure.text = _fit("\n".join(_said(each) for each in failing))

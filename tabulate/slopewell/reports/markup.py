@@ -27,9 +27,7 @@ def tag(name: str, *children: str, **attributes: Attribute) -> Markup:
 
 def join(children: Sequence[str]) -> Markup:
     """Return children one after the other; what is no markup is escaped."""
-    return Markup(
-        "".join(child if isinstance(child, Markup) else escape(child, quote=False) for child in children)
-    )
+    return Markup("".join(child if isinstance(child, Markup) else escape(child, quote=False) for child in children))
 
 
 def _attribute(key: str, value: Attribute) -> str:

@@ -9,9 +9,7 @@ from ..formula.text import write
 from ..formula.tree import Apply, Choice, Constant, Name, Number, Tree
 from ..problems import UnusableInput
 
-SPELLED = (
-    "alpha beta gamma delta epsilon zeta eta theta kappa lambda mu nu xi pi rho sigma tau phi chi psi omega"
-)
+SPELLED = "alpha beta gamma delta epsilon zeta eta theta kappa lambda mu nu xi pi rho sigma tau phi chi psi omega"
 GREEK = dict(zip(SPELLED.split(), "αβγδεζηθκλμνξπρστφχψω", strict=True))
 CONSTANTS = {"kB": ("k", "B"), "ke": ("k", "e")}
 RELATIONS = {"<": "&lt;", "<=": "≤", ">": "&gt;", ">=": "≥"}

@@ -23,9 +23,7 @@ def matrix(drawings: Sequence[Drawing]) -> Markup:
     cells = {drawing.between: _link(drawing, place, named=False) for place, drawing in enumerate(drawings)}
     head = tag("tr", tag("td"), *(tag("th", name, scope="col") for name in species))
     rows = [
-        tag(
-            "tr", tag("th", first, scope="row"), *(_cell(cells, first, second, species) for second in species)
-        )
+        tag("tr", tag("th", first, scope="row"), *(_cell(cells, first, second, species) for second in species))
         for first in species
     ]
     table = tag("table", tag("thead", head), tag("tbody", *rows), class_="matrix")

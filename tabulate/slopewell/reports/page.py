@@ -67,9 +67,7 @@ def page(sheet: Sheet) -> str:
         script=_part("page_template.js"),
         header=_header(sheet, systems),
         index=matrix(sheet.drawings) if len(sheet.drawings) > 1 else "",
-        articles="\n".join(
-            article(drawing, number, systems) for number, drawing in enumerate(sheet.drawings)
-        ),
+        articles="\n".join(article(drawing, number, systems) for number, drawing in enumerate(sheet.drawings)),
         provenance=_provenance(sheet),
         caution=escape(CAUTION),
         writer=escape(f"slopewell {__version__}"),
@@ -142,8 +140,7 @@ def report_page(report: Report) -> str:
 
 def _subject(record: Mapping[str, Any]) -> Markup:
     problems = [
-        tag("li", tag("b", each["at"]), f" {each['says']} {each['try']}")
-        for each in record.get("problems", ())
+        tag("li", tag("b", each["at"]), f" {each['says']} {each['try']}") for each in record.get("problems", ())
     ]
     findings = [
         tag(
@@ -176,8 +173,7 @@ def _worst_first(sheet: Sheet) -> Markup:
     listed = list({entry[:2]: entry for entry in reversed(listed)}.values())[::-1]
     listed.sort(key=lambda entry: entry[0] != "error")
     items = [
-        tag("li", tag("a", tag("b", level), f" {words}", href=target))
-        for level, words, target in listed[:MOST_LISTED]
+        tag("li", tag("a", tag("b", level), f" {words}", href=target)) for level, words, target in listed[:MOST_LISTED]
     ]
     if len(listed) > MOST_LISTED:
         items.append(tag("li", f"and {len(listed) - MOST_LISTED} more below"))
@@ -202,9 +198,7 @@ def _numbers(drawings: Sequence[Drawing], systems: Sequence[UnitSystem]) -> str:
         "systems": [_system(system, own) for system in systems if own is not None],
         "drawings": [_rows(drawing) for drawing in drawings],
     }
-    return json.dumps(data, ensure_ascii=False, separators=(",", ":"), allow_nan=False).replace(
-        "<", "\\u003c"
-    )
+    return json.dumps(data, ensure_ascii=False, separators=(",", ":"), allow_nan=False).replace("<", "\\u003c")
 
 
 def _system(system: UnitSystem, own: UnitSystem) -> dict[str, Any]:

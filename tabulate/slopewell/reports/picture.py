@@ -128,9 +128,7 @@ def _panel(ax: Axes, panel: Panel, drawing: Drawing, *, labelled: bool) -> None:
     ax.axhline(0.0, color=SOFT, linewidth=0.8)
     for name, values in panel.curves:
         label = _curve_label(name, drawing)
-        ax.plot(
-            drawing.separation, values, color=COLOURS[name], linestyle=LINES[name], linewidth=1.7, label=label
-        )
+        ax.plot(drawing.separation, values, color=COLOURS[name], linestyle=LINES[name], linewidth=1.7, label=label)
     ax.set_ylim(*panel.limits)
     unit = unit_text(drawing.units.per_length(panel.per_length).text)
     ax.set_ylabel(f"{panel.title.lower()}, {unit}", color=COLOURS[column])

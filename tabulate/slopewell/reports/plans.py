@@ -17,7 +17,7 @@ def plan_lines(plans: Iterable[Any], units: UnitSystem) -> list[str]:
     lines: list[str] = []
     for name, group in groupby(plans, key=lambda plan: plan.interaction):
         cells = [HEAD, *(_cells(plan) for plan in group)]
-        lines += ["" if lines else "", f"{name}  (force error and drift at most, in {units.force.text})"]
+        lines += ["", f"{name}  (force error and drift at most, in {units.force.text})"]
         lines += _aligned(cells)
     return lines[1:]
 

@@ -64,9 +64,7 @@ def _svg(panel: Panel, drawing: Drawing) -> Markup:
     zero = share(0.0, panel.limits) / 100 * SIZE
     parts = []
     if drawing.switch_start is not None and drawing.cutoff is not None:
-        start, end = (
-            max(0.0, _along(place, drawing)) / 100 * SIZE for place in (drawing.switch_start, drawing.cutoff)
-        )
+        start, end = (max(0.0, _along(place, drawing)) / 100 * SIZE for place in (drawing.switch_start, drawing.cutoff))
         width = f"{end - start:.1f}"
         parts.append(tag("rect", class_="window", x=f"{start:.1f}", y=0, width=width, height=SIZE))
     for bridge in drawing.bridges:
@@ -77,9 +75,7 @@ def _svg(panel: Panel, drawing: Drawing) -> Markup:
     if not panel.logarithmic:
         parts.append(tag("path", class_="zero", d=f"M0 {zero:.1f}H{SIZE}"))
     if drawing.cutoff is not None:
-        parts.append(
-            tag("path", class_="cutoff", d=f"M{_along(drawing.cutoff, drawing) * SIZE / 100:.1f} 0V{SIZE}")
-        )
+        parts.append(tag("path", class_="cutoff", d=f"M{_along(drawing.cutoff, drawing) * SIZE / 100:.1f} 0V{SIZE}"))
     for name, values in panel.curves:
         y = (panel.limits[1] - values) / (panel.limits[1] - panel.limits[0]) * SIZE
         parts.append(tag("path", class_=f"curve {name}", d=_path(x, y)))
@@ -205,9 +201,7 @@ def _points(drawing: Drawing, panel: Panel) -> Iterator[Markup]:
     for start, end in drawing.bridges:
         middle = (_along(start, drawing) + _along(end, drawing)) / 2
         if 0 <= middle <= 100:
-            yield tag(
-                "span", "bridge" if end > start else "join", class_="joined", style=f"left:{middle:.2f}%"
-            )
+            yield tag("span", "bridge" if end > start else "join", class_="joined", style=f"left:{middle:.2f}%")
 
 
 def _ends(drawing: Drawing) -> Markup:

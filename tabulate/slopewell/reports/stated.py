@@ -81,9 +81,7 @@ def mixed(interaction: Interaction, units: UnitSystem) -> Stated:
     """Return what stands for the words of a document where mixing filled in a pair."""
     origin, cutoff = interaction.origin, interaction.potential.cutoff
     form = catalogue().get(origin.form)
-    plain = {
-        name: v if isinstance(v, str) else number_text(float(v)) for name, v in origin.parameters.items()
-    }
+    plain = {name: v if isinstance(v, str) else number_text(float(v)) for name, v in origin.parameters.items()}
     return Stated(
         formula=form.formula if form else "",
         title=f"{form.title}, mixed from like pairs ({origin.rule})" if form else "",
@@ -132,9 +130,7 @@ def _parameters(given: dict[str, Any], form: Form | None, units: UnitSystem) -> 
     if form is None:
         return tuple(StatedParameter(name, _value(value, "1", units)) for name, value in given.items())
     return tuple(
-        StatedParameter(
-            known.name, _value(given.get(known.name, known.default), known.dimension, units), known.meaning
-        )
+        StatedParameter(known.name, _value(given.get(known.name, known.default), known.dimension, units), known.meaning)
         for known in form.parameters
     )
 
@@ -176,11 +172,7 @@ def _grid(grid: dict[str, Any], units: UnitSystem) -> str:
         "inverse": "inverse separation",
         "logarithmic": "logarithm",
     }
-    rows = (
-        f"{grid['rows']:,} rows"
-        if "rows" in grid
-        else f"rows for {_value(grid['tolerance'], 'energy', units)}"
-    )
+    rows = f"{grid['rows']:,} rows" if "rows" in grid else f"rows for {_value(grid['tolerance'], 'energy', units)}"
     spacing = even.get(grid.get("spacing", ""), "separation")
     ends = f"from {_length(grid['from'], units)} to {_length(grid['to'], units)}"
     return f"{rows} {ends}, even in {spacing}, read as {grid.get('interpolation', 'cubic-hermite')}"

@@ -25,9 +25,7 @@ class View:
     force: Limits | None
 
 
-def view_of(
-    r: Array, energy: Array | None, force: Array | None, bottom: float | None, reach: float | None
-) -> View:
+def view_of(r: Array, energy: Array | None, force: Array | None, bottom: float | None, reach: float | None) -> View:
     """Return limits that show the well and the cutoff, and let the wall leave through the top.
 
     Parameters
@@ -125,9 +123,7 @@ def thin(r: Array, columns: list[Array], limits: Limits, buckets: int = BUCKETS)
 def round_step(span: float, count: int) -> float:
     """Return the step of 1, 2 or 5 times a power of ten that cuts a span into at most so many parts."""
     power = 10.0 ** floor(log10(span / count))
-    return next(
-        (factor * power for factor in (1.0, 2.0, 5.0) if span / (factor * power) <= count), 10.0 * power
-    )
+    return next((factor * power for factor in (1.0, 2.0, 5.0) if span / (factor * power) <= count), 10.0 * power)
 
 
 def ticks(limits: Limits, count: int) -> list[tuple[float, str]]:

@@ -108,9 +108,7 @@ class ErrorBounds:
             energy = max(energy, edge.energy + SLOPE_IN_ENERGY * edge.length * off)
         return energy
 
-    def _setting(
-        self, rows: int, spacing: str, rule_name: str, ends: str
-    ) -> tuple[Rule, Spacing, SlopeErrors]:
+    def _setting(self, rows: int, spacing: str, rule_name: str, ends: str) -> tuple[Rule, Spacing, SlopeErrors]:
         grid = Spacing(float(self.grid.start), float(self.grid.end), rows, spacing)
         slopes = self.slopes(grid, ends) if rule_name == "cubic-spline" else NO_SLOPE_ERRORS
         return RULES[rule_name], grid, slopes
@@ -159,9 +157,7 @@ class ErrorBounds:
         width = self.stretches[widest].high - self.stretches[widest].low
         return None if width < max(reach / FINEST, 1e-6 * part.high) else widest
 
-    def largest_energy(
-        self, grid: Spacing, rule: Rule, slopes: SlopeErrors, rounding: Rounding
-    ) -> tuple[float, float]:
+    def largest_energy(self, grid: Spacing, rule: Rule, slopes: SlopeErrors, rounding: Rounding) -> tuple[float, float]:
         """Return the largest energy error of intervals on one piece each, and where it lies."""
 
         def added(part: Stretch, h: float) -> float:
@@ -170,9 +166,7 @@ class ErrorBounds:
 
         return self._largest(grid, rule, rule.energy, added)
 
-    def largest_force(
-        self, grid: Spacing, rule: Rule, slopes: SlopeErrors, rounding: Rounding
-    ) -> tuple[float, float]:
+    def largest_force(self, grid: Spacing, rule: Rule, slopes: SlopeErrors, rounding: Rounding) -> tuple[float, float]:
         """Return the largest force error of intervals on one piece each, and where it lies."""
 
         def added(part: Stretch, h: float) -> float:

@@ -53,10 +53,7 @@ def direct_bound(curve: Curve, edge: float, grid: Spacing, rule: Rule) -> tuple[
 
 def interval_bound(curve: Curve, low: float, high: float, rule: Rule) -> tuple[float, float]:
     """Bound the errors of energy and force on one row interval, a spline read by the curve's own slopes."""
-    at_rows = [
-        _derivatives(curve, r, len(rule.energy_basis) - 1 if rule.name != "linear" else 1)
-        for r in (low, high)
-    ]
+    at_rows = [_derivatives(curve, r, len(rule.energy_basis) - 1 if rule.name != "linear" else 1) for r in (low, high)]
     if rule.name == "linear":
         chord = _interpolant([[d[0]] for d in at_rows], low, high)
         slopes = _interpolant([[d[1]] for d in at_rows], low, high)
@@ -82,9 +79,7 @@ def _interpolant(at_rows: list[list[Fraction]], low: float, high: float) -> Tree
     return polynomial(coefficients, multiply(number(1 / h), add(R, negate(number(low)))))
 
 
-def _largest(
-    curve: Curve, low: float, high: float, read: Tree, order: int, *, differentiate: bool = False
-) -> float:
+def _largest(curve: Curve, low: float, high: float, read: Tree, order: int, *, differentiate: bool = False) -> float:
     """Bound the difference between a derivative of the curve and what is read for it."""
     largest = 0.0
     for piece in curve.pieces:

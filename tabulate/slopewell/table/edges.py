@@ -53,9 +53,7 @@ def edge_bounds(curve: Curve, grid: Spacing, rule: Rule, largest: tuple[float, f
             continue
         if found.energy > largest[0] or found.force > largest[1]:
             energy, force = direct_bound(curve, found.at, grid, rule)
-            found = EdgeBound(
-                found.at, found.length, min(found.energy, energy), min(found.force, force), found.drift
-            )
+            found = EdgeBound(found.at, found.length, min(found.energy, energy), min(found.force, force), found.drift)
         yield found
 
 
@@ -72,9 +70,7 @@ def _bound_at(before: Piece, after: Piece, grid: Spacing, rule: Rule) -> EdgeBou
             base, other = before, after
         return _row_mismatch(edge, interval, base, other, rule)
     interval = grid.around(edge)
-    choices = [
-        _split(edge, interval, base, other, rule) for base, other in ((before, after), (after, before))
-    ]
+    choices = [_split(edge, interval, base, other, rule) for base, other in ((before, after), (after, before))]
     return min(choices, key=lambda bound: bound.energy)
 
 
@@ -88,9 +84,7 @@ def _gap(one: Same, other: Same) -> Tree:
     return simplify("+", (one.tree, simplify("negate", (other.tree,))))
 
 
-def _row_mismatch(
-    edge: float, interval: tuple[float, float], base: Piece, other: Piece, rule: Rule
-) -> EdgeBound:
+def _row_mismatch(edge: float, interval: tuple[float, float], base: Piece, other: Piece, rule: Rule) -> EdgeBound:
     """Bound an interval whose one row has the values of the other piece."""
     h = interval[1] - interval[0]
     energy, force, drift = _smooth(base, interval, h, rule)
@@ -129,9 +123,7 @@ def _smooth(base: Piece, interval: tuple[float, float], h: float, rule: Rule) ->
 
 
 def _sizes(coefficients: list[Ball]) -> list[float]:
-    return [
-        float(abs(c).upper()) * factorial(k) if c.is_finite() else inf for k, c in enumerate(coefficients)
-    ]
+    return [float(abs(c).upper()) * factorial(k) if c.is_finite() else inf for k, c in enumerate(coefficients)]
 
 
 def _from_rows(sizes: list[float], h: float, rule: Rule) -> tuple[float, float]:

@@ -30,9 +30,7 @@ EXACT = Rounding()
 """No rounding but that of doubles."""
 
 
-def energy_rounding(
-    derivatives: tuple[float, ...], part: Stretch, h: float, rounding: Rounding, rule: Rule
-) -> float:
+def energy_rounding(derivatives: tuple[float, ...], part: Stretch, h: float, rounding: Rounding, rule: Rule) -> float:
     """Return what rounding adds to the energy error on intervals of length h in a stretch."""
     energy, force = derivatives[0], derivatives[1]
     stored = STORED * (energy + part.high * force)
@@ -44,9 +42,7 @@ def energy_rounding(
     return stored + printed + moved + slopes
 
 
-def force_rounding(
-    derivatives: tuple[float, ...], part: Stretch, h: float, rounding: Rounding, rule: Rule
-) -> float:
+def force_rounding(derivatives: tuple[float, ...], part: Stretch, h: float, rounding: Rounding, rule: Rule) -> float:
     """Return what rounding adds to the force error on intervals of length h in a stretch."""
     energy, force, stiffness = derivatives[:3]
     stored = STORED * (force + part.high * stiffness)

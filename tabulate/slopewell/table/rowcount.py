@@ -103,7 +103,5 @@ def row_count(bounds: ErrorBounds, grid: Grid, name: str) -> int:
             f"No table of up to {MOST_ROWS:,} rows keeps the tolerance for {name}: it is below the rounding "
             "of doubles, or the curve jumps or has no bound."
         )
-        raise UnusableInput(
-            [Problem("grid.tolerance", says, "Allow more, or choose another interpolation rule.")]
-        )
+        raise UnusableInput([Problem("grid.tolerance", says, "Allow more, or choose another interpolation rule.")])
     return rows

@@ -49,9 +49,7 @@ def evaluate(curve: Curve, r: Array, order: int, units: UnitSystem) -> list[Arra
     angstrom = converted(r, units.length.factor)
     derivatives = curve.accurate_derivatives(angstrom, order)
     with np.errstate(all="ignore"):
-        return [
-            (derivative * pair(_factor(units, k))).rounded() + 0.0 for k, derivative in enumerate(derivatives)
-        ]
+        return [(derivative * pair(_factor(units, k))).rounded() + 0.0 for k, derivative in enumerate(derivatives)]
 
 
 def _factor(units: UnitSystem, order: int) -> Fraction:

@@ -25,8 +25,7 @@ def residuals(part: Stretch, grid: Spacing) -> tuple[float, float]:
     h = grid.longest(max(part.low - h, grid.start), min(part.high + h, grid.end))
     uneven = h**2 * grid.unevenness(part.low, part.high)
     return tuple(  # type: ignore[return-value]
-        min(h**4 * sizes[5] + uneven * sizes[4], h**3 * sizes[4]) / 24
-        for sizes in (part.largest, part.middle)
+        min(h**4 * sizes[5] + uneven * sizes[4], h**3 * sizes[4]) / 24 for sizes in (part.largest, part.middle)
     )
 
 
@@ -144,9 +143,7 @@ def slope_errors(curve: Curve, grid: Spacing, ends: str, stretches: list[Stretch
     return SlopeErrors(grid, tuple(sorted(parts)), tuple(known), largest)
 
 
-def end_errors(
-    curve: Curve, grid: Spacing, ends: str, count: int, largest: float, at_start: bool
-) -> list[float]:
+def end_errors(curve: Curve, grid: Spacing, ends: str, count: int, largest: float, at_start: bool) -> list[float]:
     """Bound the slope errors of the knots next to an end, from the equations of the knots themselves.
 
     ``clamped`` ends have the stored slopes. At a ``natural`` end 2 m₀ + m₁ = 3 U[x₀, x₁]; at a
@@ -175,9 +172,7 @@ def end_errors(
     return errors[: count + 1]
 
 
-def _end_equation(
-    ends: str, knots: list[Knot], next_size: float, weights: tuple[float, float]
-) -> tuple[float, float]:
+def _end_equation(ends: str, knots: list[Knot], next_size: float, weights: tuple[float, float]) -> tuple[float, float]:
     """Return the residual of the end's equation, and that of the next knot with the end's slope put out."""
     (x0, u0, s0), (x1, u1, s1), (x2, u2, _) = knots[:3]
     h, k = abs(x1 - x0), abs(x2 - x1)

@@ -73,9 +73,7 @@ def diagnose(evidence: Evidence) -> list[Diagnosis]:
     fitting = []
     if evidence.wrong.size:
         for mistake in MISTAKES:
-            options = [
-                (misfit, e) for e in mistake.explain(evidence) if (misfit := _misfit(evidence, e)) is not None
-            ]
+            options = [(misfit, e) for e in mistake.explain(evidence) if (misfit := _misfit(evidence, e)) is not None]
             if options:
                 misfit, best = min(options, key=lambda option: option[0])
                 fitting.append(Diagnosis(mistake.name, best, misfit))

@@ -43,9 +43,7 @@ def fitted(evidence: Evidence, shape: Array) -> Factor | None:
         sharpness = np.abs(evidence.expected[chosen]) / evidence.band[chosen]
         own = np.abs(evidence.force[chosen]) / evidence.rounding[chosen]
         ratio = evidence.force[chosen] / base
-    sharpness = np.minimum(
-        np.nan_to_num(sharpness, nan=0.0, posinf=1e15), np.nan_to_num(own, nan=0.0, posinf=1e15)
-    )
+    sharpness = np.minimum(np.nan_to_num(sharpness, nan=0.0, posinf=1e15), np.nan_to_num(own, nan=0.0, posinf=1e15))
     usable = (sharpness > USABLE) & np.isfinite(ratio) & (ratio != 0)
     if np.count_nonzero(usable) < 3:
         return None
@@ -54,9 +52,7 @@ def fitted(evidence: Evidence, shape: Array) -> Factor | None:
     return Factor(factor, float(np.clip(2.0 / best, CLOSEST, LOOSEST)))
 
 
-def explanation(
-    evidence: Evidence, shape: Array, factor: float, says: str, remedy: str, **more: object
-) -> Explanation:
+def explanation(evidence: Evidence, shape: Array, factor: float, says: str, remedy: str, **more: object) -> Explanation:
     """Return the explanation that the force is a shape times the expected one, times a factor."""
     scale = factor * shape
     with np.errstate(all="ignore"):
@@ -89,8 +85,7 @@ def counted_twice(evidence: Evidence) -> Iterator[Explanation]:
         known,
         f"The force is {how} what the slope of the energy says{flipped}, as when pairs are counted twice "
         "in one column.",
-        f"Divide the force by {known:g}, or multiply the energy by it: only the source tells which "
-        "column is right.",
+        f"Divide the force by {known:g}, or multiply the energy by it: only the source tells which column is right.",
         details={"factor": known} | ({"also": ["force-sign-flipped"]} if known < 0 else {}),
     )
 
@@ -176,9 +171,7 @@ def unit_readings(evidence: Evidence, factor: Factor) -> tuple[float, str] | Non
         near = _nearest(found, wanted, min(factor.tolerance, 2e-3))
     if not near:
         return None
-    return float(np.copysign(near[0][0], factor.measured)), "; or ".join(
-        dict.fromkeys(entry[2] for entry in near[:2])
-    )
+    return float(np.copysign(near[0][0], factor.measured)), "; or ".join(dict.fromkeys(entry[2] for entry in near[:2]))
 
 
 def _both(energy: str, other_energy: str, length: str, other_length: str) -> str:
@@ -186,9 +179,7 @@ def _both(energy: str, other_energy: str, length: str, other_length: str) -> str
     return f"the force is in {force} where energy and separation are in {energy} and {length}"
 
 
-def _nearest(
-    found: list[tuple[float, float, str]], wanted: float, tolerance: float
-) -> list[tuple[float, float, str]]:
+def _nearest(found: list[tuple[float, float, str]], wanted: float, tolerance: float) -> list[tuple[float, float, str]]:
     near = [entry for entry in found if abs(wanted / entry[0] - 1) <= tolerance]
     return sorted(near, key=lambda entry: (entry[1], abs(wanted / entry[0] - 1)))
 

@@ -38,11 +38,7 @@ def offset(evidence: Evidence) -> Iterator[Explanation]:
                 band,
                 f"The force in each row belongs to the separation {where}.",
                 "Shift the force column back"
-                + (
-                    "."
-                    if rows == int(rows)
-                    else "; half a row is what a difference of neighbouring energies gives."
-                ),
+                + ("." if rows == int(rows) else "; half a row is what a difference of neighbouring energies gives."),
                 measured=rows,
                 details={"rows": number},
                 weight=0.2 * (abs(rows) > 4),
@@ -59,9 +55,7 @@ class _Halves:
         wide = np.maximum(band[:-1], band[1:])
         self.middles = []
         if x.size >= 4:
-            around = np.maximum(
-                wide, np.maximum(np.append(wide[1:], np.inf), np.insert(wide[:-1], 0, np.inf))
-            )
+            around = np.maximum(wide, np.maximum(np.append(wide[1:], np.inf), np.insert(wide[:-1], 0, np.inf)))
             # Half-way in separation, and half-way in what the rows are even in.
             for weights in (_middle_weights(r), (-1 / 16, 9 / 16, 9 / 16, -1 / 16)):
                 between = (x[:-1] + x[1:]) / 2

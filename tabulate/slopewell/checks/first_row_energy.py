@@ -44,8 +44,9 @@ def look(facts: PotentialFacts) -> Iterator[Finding]:
     below = "the curve goes on smoothly to zero separation" if bounded else "the code reads outside its table"
     yield Finding(
         level=ERROR if barrier < TOO_LOW else WARNING,
-        says=f"The first row, at {place:.6g} {unit}, has only {barrier:.3g} k_B·T ({shown}): a pair gets there with "
-        f"a Boltzmann factor of {exp(-min(barrier, 700.0)) if barrier > -700 else float('inf'):.2g}, and below it {below}.",
+        says=f"The first row, at {place:.6g} {unit}, has only {barrier:.3g} k_B·T "
+        f"({shown}): a pair gets there with "
+        f"a Boltzmann factor of {_boltzmann(barrier):.2g}, and below it {below}.",
         remedy="Start the grid closer in.",
         start=place,
         end=place,
@@ -53,6 +54,11 @@ def look(facts: PotentialFacts) -> Iterator[Finding]:
         limit=TOO_LOW if barrier < TOO_LOW else LOW,
         unit="1",
     )
+
+
+def _boltzmann(barrier: float) -> float:
+    """Return exp(-barrier), kept within the range of doubles."""
+    return exp(-max(min(barrier, 700.0), -700.0))
 
 
 def _bounded(facts: PotentialFacts, energy: float) -> bool:

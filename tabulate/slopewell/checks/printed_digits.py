@@ -48,7 +48,8 @@ def look(
     yield Finding(
         level=WARNING,
         says=f"In {file} the printed digits of the energy put a noise of {facts.energy(worst, 1):.2g} {unit} "
-        f"into a force taken from differences of rows; the largest attraction is {facts.energy(-pull[1], 1):.3g} {unit}.",
+        f"into a force taken from differences of rows; "
+        f"the largest attraction is {facts.energy(-pull[1], 1):.3g} {unit}.",
         remedy=f"Print {missing} more digit{'s' if missing > 1 else ''} of the energy, or use fewer rows.",
         check="enough-digits",
         interaction=facts.potential.name,

@@ -66,7 +66,8 @@ def look_at_table(facts: TableFacts) -> Iterator[Finding]:
         yield Finding(
             level=ERROR,
             says=f"By its certificate, reading the table makes {ARTICLES[name]} {name} error of up to "
-            f"{bound:.3g} {unit}, near {place:.4g} {facts.units.length.text}; its document allows {tolerance:.3g} {unit}.",
+            f"{bound:.3g} {unit}, near {place:.4g} {facts.units.length.text}; "
+            f"its document allows {tolerance:.3g} {unit}.",
             remedy="Tabulate its document anew with more rows; slopewell plan says how many.",
             start=place,
             end=place,

@@ -61,7 +61,7 @@ def test_two_workers_do_nearly_twice_as_much(tmp_path: Path) -> None:
 def test_memory_does_not_grow_with_the_number_of_sets(workers: int, into: str, tmp_path: Path) -> None:
     # The caches of formulas and landmarks are full long before the smaller count.
     most = []
-    for count in (400, 1600):
+    for count in (300, 900):
         lay_out(tmp_path / str(count), sets(count, "A-A.epsilon,A-A.sigma"), text(grid=GRID, outputs=OUTPUT))
         done = subprocess.run(
             [sys.executable, "-c", MEMORY, into, str(workers)],

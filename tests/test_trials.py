@@ -9,6 +9,7 @@ import numpy as np
 import pytest
 from slopewell.cli import main
 from slopewell.problems import UnusableInput
+from slopewell.tables import Reading
 from slopewell.trials import read_time, trial
 
 CAUSES = ["time-step", "cutoff", "interpolation", "force-not-slope", "digits"]
@@ -90,3 +91,26 @@ def test_times() -> None:
     for wrong in ("100", "-1 ns", "x ns", "1 hour", "nan ns"):
         with pytest.raises(UnusableInput):
             read_time(wrong, "--length")
+
+
+def text_table(folder: Path, sign: float) -> Path:
+    r = np.linspace(2.4, 7.0, 400)
+    energy = 0.04 * ((3.4 / r) ** 12 - (3.4 / r) ** 6)
+    force = sign * 0.04 * (12 * (3.4 / r) ** 12 - 6 * (3.4 / r) ** 6) / r
+    path = folder / "bead-bead-old.dat"
+    path.write_text("\n".join(f"{a!r} {b!r} {c!r}" for a, b, c in np.array([r, energy, force]).T.tolist()))
+    return path
+
+
+TEXT = Reading(("separation", "energy", "force"), "eV,angstrom")
+
+
+def test_a_text_is_one_pair_of_one_species_whatever_its_name(tmp_path: Path) -> None:
+    masses = {"bead-bead-old": 40.0}
+    done = trial(text_table(tmp_path, 1.0), reading=TEXT, masses=masses, temperature=120.0, **SHORT)
+    assert done.studied.table.species == ("bead-bead-old",)
+
+
+def test_a_force_of_the_wrong_sign_ends_in_words(tmp_path: Path) -> None:
+    with pytest.raises(UnusableInput, match="breaks down"):
+        trial(text_table(tmp_path, -1.0), reading=TEXT, temperature=120.0, steps=400, seeds=1, particles=128)

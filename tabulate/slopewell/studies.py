@@ -13,7 +13,7 @@ from .problems import Problem, UnusableInput
 from .table import Rows, tabulate_rows
 from .table.bounds import error_bounds
 from .table.rowcount import row_count
-from .tables import Loaded, Reading, is_table, load
+from .tables import Loaded, Reading, is_own, is_table, load
 from .units import UnitSystem
 
 Pair = tuple[str, str]
@@ -104,7 +104,8 @@ def study(
             rows = {names[0]: replace(next(iter(rows.values())), name=names[0])}
         if set(rows) <= set(names):
             return replace(_with_document(found, rows, table.units, masses or {}), file=str(path))
-    pairs = {_pair(name): one for name, one in rows.items()}
+    text = not is_own(Path(path), how)
+    pairs = {_pair(name, text=text): one for name, one in rows.items()}
     species = tuple(dict.fromkeys(name for pair in pairs for name in pair))
     curves = {pair: from_rows(one, table.units) for pair, one in pairs.items()}
     return Studied(str(path), table.title, table.units, System(species, curves, masses or {}), rows=pairs)
@@ -154,7 +155,11 @@ def _with_document(
     )
 
 
-def _pair(name: str) -> Pair:
-    """Return the two species of an interaction's name: its halves, or the whole name twice."""
+def _pair(name: str, *, text: bool) -> Pair:
+    """Return the two species of an interaction's name: its halves, or the whole name twice.
+
+    A text is named like its file, where a hyphen tells two species only if it repeats one.
+    """
     first, hyphen, second = name.partition("-")
-    return (first, second) if hyphen and first and second else (name, name)
+    apart = hyphen and first and second and (first == second or not text)
+    return (first, second) if apart else (name, name)

@@ -13,7 +13,7 @@ import numpy as np
 
 from .predictions.curve import EnergyCurve
 from .predictions.drift import CAUSES, Course, Levels, Slope, follow, settle, slope
-from .predictions.dynamics import DALTON, SKIN, Motion, Particles, start
+from .predictions.dynamics import DALTON, SKIN, Motion, Particles, RunsAwayError, start
 from .predictions.faults import Parts, take_apart
 from .predictions.fluid import LIQUID
 from .problems import Problem, UnusableInput
@@ -213,7 +213,7 @@ def trial(
     Raises
     ------
     UnusableInput
-        If the file can't be used, or a pair is missing.
+        If the file can't be used, a pair is missing, or the table lets particles fall into each other.
     """
     studied = study(path, reading=reading, document=document, masses=masses)
     wanted = {"temperature": temperature, "density": number_density, "step": step, "particles": particles}
@@ -226,7 +226,12 @@ def trial(
         if seed == 0:
             order = _order(begin, levels, conditions.step)
         numbers = track(range(conditions.steps), f"run {seed + 1} of {seeds}")
-        courses.append(follow(begin, levels, conditions.step, numbers, conditions.steps))
+        try:
+            courses.append(follow(begin, levels, conditions.step, numbers, conditions.steps))
+        except RunsAwayError:
+            says = "The simulation breaks down: particles come so near each other that no force is left to part them."
+            remedy = "See what slopewell check says of the table; or shorten the time step."
+            raise UnusableInput([Problem("", says, remedy)], studied.file) from None
     return _judged(studied, conditions, courses, order)
 
 
@@ -340,7 +345,7 @@ def _tenth_of_vibration(studied: Studied, thermal: float, weights: list[float]) 
     for one, other, curve in system.pairs():
         at = curve.well.separation if curve.well else _size(curve, thermal)
         near = curve.all(np.array([0.97 * at, at, 1.03 * at]), 1)[1]
-        stiffness = max(float(near[2] - near[0]) / (0.06 * at), 1e-9)
+        stiffness = max(abs(float(near[2] - near[0])) / (0.06 * at), 1e-9)
         mass = by_name[one] * by_name[other] / (by_name[one] + by_name[other])
         fastest = max(fastest, sqrt(stiffness / (mass * DALTON)))
     return 0.1 / fastest

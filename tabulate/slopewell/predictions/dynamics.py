@@ -58,6 +58,10 @@ class Particles:
         return replace(self, velocities=-self.velocities)
 
 
+class RunsAwayError(ArithmeticError):
+    """Particles came where their force is not finite."""
+
+
 class Neighbours:
     """Pairs of particles near each other, listed once for many steps.
 
@@ -140,7 +144,8 @@ def moment(particles: Particles, near: Neighbours, fields: Sequence[Field]) -> M
     for number in range(len(fields)):
         push = force[number] / distance
         for axis in range(3):
-            part = push * apart[axis]
+            with np.errstate(invalid="ignore"):
+                part = push * apart[axis]
             total[number, axis] = np.bincount(near.second, part, particles.count) - np.bincount(
                 near.first, part, particles.count
             )
@@ -170,13 +175,21 @@ class Motion:
         self.now = moment(particles, self.near, fields)
 
     def advance(self) -> tuple[Moment, Moment]:
-        """Make one step; return the moments before and after it, on the same list of pairs."""
+        """Make one step; return the moments before and after it, on the same list of pairs.
+
+        Raises
+        ------
+        RunsAwayError
+            If a force is not finite.
+        """
         old, step = self.particles, self.step
         if self.near.is_stale(old.places):
             self.near = Neighbours(old, self.reach)
             self.now = moment(old, self.near, self.fields)
         before = self.now
         inverse = 1 / (DALTON * old.masses)
+        if not np.isfinite(before.total[0]).all():
+            raise RunsAwayError
         half = old.velocities + 0.5 * step * before.total[0] * inverse
         moved = replace(old, places=old.places + step * half)
         self.now = moment(moved, self.near, self.fields)

@@ -10,6 +10,7 @@ import pytest
 from slopewell.cli import main
 from slopewell.forecasting import predict, read_density, read_masses, read_temperatures
 from slopewell.problems import UnusableInput
+from slopewell.reports.forecast import forecast_lines
 
 DOCUMENT = """
 schema = "slopewell/potential/1"
@@ -121,6 +122,16 @@ def test_one_screen_for_people(tmp_path: Path, capsys: pytest.CaptureFixture[str
     assert "difference" in shown
     assert "expected" in shown
     assert len(shown.splitlines()) < 60
+
+
+def test_a_well_that_only_the_table_has_is_none() -> None:
+    common: dict[str, Any] = {"curve": None, "table": 2.0, "expected": None, "unit": "eV"}
+    rows = [{"subject": name, "quantity": "well-depth", **common} for name in ("A-A", "B-B")]
+    rows += [{"subject": "A-B", "quantity": "well-depth", **common, "curve": 3.0}]
+    lines = {line.split()[0]: line.split() for line in forecast_lines("Oxide", rows, []) if line.strip()}
+    assert lines["A-A"][1:] == lines["B-B"][1:] == ["-"] * 7
+    assert lines["A-B"][2] == "3"
+    assert "crystal" not in " ".join(lines["One"])
 
 
 def test_a_missing_pair_is_told_and_refused_where_it_is_asked_for(tmp_path: Path) -> None:

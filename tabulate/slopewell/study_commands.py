@@ -57,12 +57,17 @@ def _predict(options: argparse.Namespace) -> int:
 def trial_options(command: argparse.ArgumentParser) -> None:
     """Add the options of ``trial``."""
     _study_options(command)
-    command.add_argument("--length", metavar="TIME", default="1 ns", help='of the run to judge, such as "100 ns"')
-    command.add_argument("--temperature", metavar="T", help='such as "300 K" (default: that of the document)')
-    command.add_argument("--time-step", metavar="TIME", help='such as "2 fs"')
+    command.add_argument("--length", metavar="TIME", default="1 ns", help="of the run to judge (default: 1 ns)")
+    command.add_argument("--temperature", metavar="T", help='such as "300 K" (default: from the document)')
+    command.add_argument("--time-step", metavar="TIME", help='"2 fs" (default: from the stiffest pair)')
     command.add_argument("--interpolation", metavar="RULE", default="", help="how the code reads between rows")
-    command.add_argument("--particles", metavar="N", type=int, help="how many")
-    command.add_argument("--steps", metavar="N", type=int, help="of each run")
+    command.add_argument(
+        "--particles",
+        metavar="N",
+        type=int,
+        help="how many (default: 256, more for a long cutoff)",
+    )
+    command.add_argument("--steps", metavar="N", type=int, help="of each run (default: 200 to 1500)")
     command.add_argument("--seeds", metavar="N", type=int, default=2, help="how many runs (default: 2)")
     command.set_defaults(command=_trial)
 

@@ -321,7 +321,7 @@ def _conditions(
     step = wanted["step"]
     if step is None:
         step = _tenth_of_vibration(studied, K_B * temperature, weights)
-        assumed.append(f"time step: {step:.3g} fs, a tenth of the shortest vibration's period over 2 pi")
+        assumed.append(f"time step: {step:.3g} fs, a tenth of the shortest vibration's period over 2π")
     if steps is None:
         pairs = 0.5 * count * density * 4.19 * reach**3
         steps = int(np.clip(PAIRS / pairs, 200, 1500))

@@ -46,8 +46,9 @@ class Gas:
         -----
         B = −2π·N_A ∫ (e^(−U/kT) − 1) r² dr.
         """
-        mayer = np.expm1(-self.energy / (K_B * temperature))
-        return float(-2 * pi * np.sum(self.weight * mayer * self.r**2)) * CUBIC_CENTIMETRE_PER_MOLE
+        with np.errstate(over="ignore"):
+            mayer = np.expm1(-self.energy / (K_B * temperature))
+            return float(-2 * pi * np.sum(self.weight * mayer * self.r**2)) * CUBIC_CENTIMETRE_PER_MOLE
 
     def quantum_correction(self, temperature: float, reduced_mass: float) -> float:
         """Return the first quantum correction to it, in cm³/mol, for a reduced mass in dalton.

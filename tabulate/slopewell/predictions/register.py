@@ -4,6 +4,7 @@ from __future__ import annotations
 
 from collections.abc import Callable, Iterator
 from dataclasses import dataclass
+from math import isfinite
 
 from . import collisions, crystals, fluid, gas, vibrations
 from .figures import Figure, Setting, System
@@ -51,4 +52,6 @@ def compare(curve: System | None, table: System | None, setting: Setting) -> lis
 
 
 def _by_key(figures: Iterator[Figure]) -> dict[tuple[object, ...], Figure]:
-    return {(figure.subject, figure.quantity, *sorted(figure.keys.items())): figure for figure in figures}
+    # An attraction of many k_B·T makes a gas coefficient overflow: there is no such number.
+    finite = (figure for figure in figures if isfinite(figure.value))
+    return {(figure.subject, figure.quantity, *sorted(figure.keys.items())): figure for figure in finite}

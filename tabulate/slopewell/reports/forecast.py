@@ -14,7 +14,7 @@ PER_TEMPERATURE = (
     "viscosity",
     "diffusion-coefficient",
 )
-HEADS = ("second virial", "table-curve", "with quantum", "omega(1,1)", "omega(2,2)", "viscosity", "diffusion")
+HEADS = ("second virial", "table − curve", "with quantum", "omega(1,1)", "omega(2,2)", "viscosity", "diffusion")
 CRYSTAL = (
     ("lattice-constant", "constant"),
     ("cohesive-energy", "cohesion"),
@@ -25,6 +25,12 @@ CRYSTAL = (
     ("einstein-frequency", "Einstein"),
     ("zone-boundary-frequency", "zone edge"),
 )
+LABELS = {
+    "boyle-temperature": "Boyle temperature",
+    "zero-point-energy": "zero-point energy",
+    "cutoff-cost": "energy lost to the cutoff",
+}
+"""Quantities that people call otherwise."""
 FEW_LEVELS = 4
 MOST_IN_FULL = 2
 PAIR = (
@@ -72,16 +78,21 @@ def forecast_lines(title: str, rows: Sequence[Row], notes: Iterable[str]) -> Ite
 
 def _overview(rows: Sequence[Row]) -> Iterator[str]:
     """Yield a line a pair, and the crystal of lowest energy of each subject that forms one."""
-    units = {row["quantity"]: row["unit"] for row in rows}
+    pairs = dict.fromkeys(row["subject"] for row in rows if "structure" not in row)
+    if any(row["curve"] is not None for row in rows):
+        # What only the table shows, such as a well at a truncated end, is no property of the curve.
+        rows = [row for row in rows if row["curve"] is not None]
+    units = {row["quantity"]: _unit(row) for row in rows}
     by_subject = {
-        name: [row for row in rows if row["subject"] == name] for name in dict.fromkeys(r["subject"] for r in rows)
+        name: [row for row in rows if row["subject"] == name]
+        for name in dict.fromkeys([*pairs, *(row["subject"] for row in rows)])
     }
     yield ""
-    yield f"  {'pair':<10}" + "".join(f"{head:>14}" for _, head in PAIR) + f"{'table-curve':>14}"
+    yield f"  {'pair':<10}" + "".join(f"{head:>14}" for _, head in PAIR) + f"{'table − curve':>14}"
     yield f"  {'':<10}" + "".join(f"{units.get(name, ''):>14}" for name, _ in PAIR)
     for subject, own in by_subject.items():
         pair = [row for row in own if "structure" not in row]
-        if pair:
+        if subject in pairs:
             cells = [number(_either(pair, name)) for name, _ in PAIR]
             yield f"  {subject:<10}" + "".join(f"{cell:>14}" for cell in (*cells, _farthest(pair)))
     bound = {name: _deepest(own) for name, own in by_subject.items() if any("structure" in row for row in own)}
@@ -95,7 +106,8 @@ def _overview(rows: Sequence[Row]) -> Iterator[str]:
         stands = (_either(own, "smallest-stiffness") or 0) > 0
         yield (f"  {head:<28}" + "".join(f"{cell:>11}" for cell in cells) + f"  {'stands' if stands else 'gives way'}")
     yield ""
-    yield "  One line a pair, and its crystal of lowest energy; --subject NAME or --json shows everything."
+    crystals = ", and its crystal of lowest energy" if bound else ""
+    yield f"  One line a pair{crystals}; --subject NAME or --json shows everything."
 
 
 def _either(rows: Sequence[Row], name: str) -> float | None:
@@ -133,7 +145,7 @@ def _singles(rows: Sequence[Row]) -> Iterator[str]:
         difference = None if curve is None or table is None else table - curve
         yield (
             f"    {_label(row):<27}{number(curve):>13}{number(table):>13}{number(difference, 2):>13}"
-            f"{number(row['expected']):>11}  {row['unit']}"
+            f"{number(row['expected']):>11}  {_unit(row)}"
         )
         if row is shown[-1]:
             continue
@@ -141,8 +153,12 @@ def _singles(rows: Sequence[Row]) -> Iterator[str]:
             yield f"    … {len(levels)} levels in all"
 
 
+def _unit(row: Row) -> str:
+    return str(row["unit"]).replace("uPa", "µPa")
+
+
 def _label(row: Row) -> str:
-    words = str(row["quantity"]).replace("-", " ")
+    words = LABELS.get(row["quantity"], str(row["quantity"]).replace("-", " "))
     if "level" in row:
         words = f"level {row['level']}"
     return f"{words} {row.get('side', '')}".strip()
@@ -164,7 +180,7 @@ def _both(rows: Sequence[Row], names: Sequence[str]) -> Iterator[tuple[str, list
         yield "curve", [number(value) for value in curves]
         differences = [None if a is None or b is None else b - a for a, b in zip(curves, tables, strict=True)]
         if any(value is not None for value in differences):
-            yield "table-curve", [f"{value:+.1e}" if value is not None else "-" for value in differences]
+            yield "table − curve", [f"{value:+.1e}" if value is not None else "-" for value in differences]
     else:
         yield "table", [number(value) for value in tables]
 
@@ -172,7 +188,7 @@ def _both(rows: Sequence[Row], names: Sequence[str]) -> Iterator[tuple[str, list
 def _crystals(rows: Sequence[Row]) -> Iterator[str]:
     if not rows:
         return
-    units = {row["quantity"]: row["unit"] for row in rows}
+    units = {row["quantity"]: _unit(row) for row in rows}
     yield ""
     yield "    " + f"{'crystal':<18}" + "".join(f"{head:>11}" for _, head in CRYSTAL) + "  shear"
     yield "    " + f"{'':<18}" + "".join(f"{units.get(name.split()[0], ''):>11}" for name, _ in CRYSTAL)
@@ -188,7 +204,7 @@ def _crystals(rows: Sequence[Row]) -> Iterator[str]:
 def _gas(rows: Sequence[Row]) -> Iterator[str]:
     if not rows:
         return
-    units = {row["quantity"]: row["unit"].removeprefix("1") for row in rows}
+    units = {row["quantity"]: _unit(row).removeprefix("1") for row in rows}
     names = [units.get(name.split()[0], "") for name in PER_TEMPERATURE]
     yield ""
     yield f"    {'temperature':<12}" + "".join(f"{head:>14}" for head in HEADS)
@@ -214,11 +230,14 @@ def trial_lines(title: str, record: Row) -> Iterator[str]:
     yield ""
     yield (
         f"  {run['particles']} particles, {run['steps']} steps of {run['time_step']:.3g} fs, "
-        f"{run['seeds']} runs, {run['temperature']:.4g} K, {run['number_density']:.4g} angstrom^-3"
+        f"{run['seeds']} run{'s' * (run['seeds'] != 1)}, {run['temperature']:.4g} K, "
+        f"{run['number_density']:.4g} angstrom^-3"
     )
-    yield f"  drift     {drift['value']:+.2e} +- {drift['error']:.1e} {drift['unit']} a particle"
+    unit = drift["unit"].replace("*", "·")
+    yield f"  drift     {drift['value']:+.2e} ± {drift['error']:.1e} {unit} a particle"
     ripple = record["ripple"]
-    yield f"  ripple    {ripple['value']:.1e} k_B*T; halving the step shows order {ripple['order']:.2f}"
+    power = f"falling as the step to the power {ripple['order']:.2f}"
+    yield f"  ripple    the energy ripples by {ripple['value']:.1e} k_B·T a particle, {power}"
     yield ""
     yield f"    {'cause':<18}{'drift':>12}{'error':>12}{'size':>12}{'share':>8}"
     for cause in record["causes"]:
@@ -229,7 +248,7 @@ def trial_lines(title: str, record: Row) -> Iterator[str]:
     yield ""
     yield (
         f"  A run of {growth['length']:g} ns {VERDICTS[record['verdict']]} ({record['verdict']}): "
-        f"{growth['value']:.2g} k_B*T a particle for certain, "
+        f"{growth['value']:.2g} k_B·T a particle for certain, "
         f"up to {max(growth['value'], growth['possible']):.2g} by faults of the table."
     )
     if record["notes"]:

@@ -33,6 +33,14 @@ def table(
     return Table((rows,), unit_system(*units.split(",")))
 
 
+def moved(shift: float) -> Table:
+    return Table((Rows("A-B", R + shift, energy(R), force(R)),), unit_system("eV", "angstrom"))
+
+
+def pushed(factor: float, offset: float = 0.0) -> Table:
+    return Table((Rows("A-B", R, energy(R), factor * force(R) + offset),), unit_system("eV", "angstrom"))
+
+
 def test_a_table_equals_itself_in_other_units() -> None:
     found = compare(table(), table(scale=96.48533212331002, units="kJ/mol,nm", length=0.1))
 
@@ -48,6 +56,11 @@ def test_a_table_equals_itself_in_other_units() -> None:
         (table(shift=0.002), "energy-shift", 0.002),
         (table(scale=1.05), "energy-factor", 1.05),
         (table(scale=-1.0), "energy-sign", -1.0),
+        (moved(0.05), "separation-shift", 0.05),
+        (pushed(0.1), "force-in-other-units", 0.1),
+        (pushed(-1.0), "force-sign-flipped", -1.0),
+        (pushed(2.0), "counted-twice", 2.0),
+        (pushed(1.0, 0.003), "constant-force-offset", 0.003),
     ],
 )
 def test_what_explains_the_difference_is_named(other: Table, name: str, factor: float) -> None:

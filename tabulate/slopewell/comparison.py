@@ -13,7 +13,7 @@ from numpy.typing import NDArray
 from .checks import TableFacts
 from .conversion import completed, in_units
 from .document import read_document
-from .explaining import Explained, explain, length_ratio
+from .explaining import Explained, explain, explain_force, length_ratio
 from .problems import Problem, UnusableInput
 from .table import Rows, Table, tabulate_rows
 from .table.interpolation import interpolant
@@ -43,6 +43,9 @@ class Difference:
         Largest difference and where.
     relative : float
         Largest difference of energy over the energy scale.
+    force_relative : float
+        Largest difference of force over the force that leads from row to row over the energy scale, or over the
+        force itself where it is larger; 0 where a file states no force.
     explained_by : Explained or None
     landmarks : mapping
         By name, the value in the first and in the second file.
@@ -54,6 +57,7 @@ class Difference:
     energy: tuple[float, float]
     force: tuple[float, float] | None
     relative: float
+    force_relative: float
     explained_by: Explained | None
     landmarks: dict[str, tuple[float | None, float | None]]
     start: float
@@ -69,6 +73,7 @@ class Difference:
             "energy": {"largest": self.energy[0], "at": self.energy[1]},
             "force": None if self.force is None else {"largest": self.force[0], "at": self.force[1]},
             "relative": self.relative,
+            "force_relative": self.force_relative,
             "explained_by": None if found is None else {"name": found.name, "factor": found.factor, "says": found.says},
             "landmarks": {name: {"first": one, "second": other} for name, (one, other) in self.landmarks.items()},
         }
@@ -86,8 +91,8 @@ class Comparison:
 
     @property
     def within(self) -> bool:
-        """Whether every relative difference of energy keeps the tolerance."""
-        return all(difference.relative <= self.tolerance for difference in self.differences)
+        """Whether every relative difference of energy and force keeps the tolerance."""
+        return all(max(one.relative, one.force_relative) <= self.tolerance for one in self.differences)
 
     def record(self) -> dict[str, Any]:
         """Return the comparison as JSON data."""
@@ -227,7 +232,11 @@ def _difference(one: _Side, other: _Side, mine: str, theirs: str, tolerance: flo
     energy = _largest(r, energies, others)
     force = _largest(r, forces, other_forces)
     relative = energy[0] / scale
-    found = None
+    found, force_relative, force_scale = None, 0.0, scale / float(np.median(np.diff(r)))
+    if "force" not in (*first.derived, *second.derived):
+        force_relative = _largest(r, *(x / np.maximum(np.abs(forces), force_scale) for x in (forces, other_forces)))[0]
+    if relative <= tolerance < force_relative:
+        found = explain_force(forces, other_forces, one.units, force_scale * tolerance)
     if relative > tolerance:
         found = explain(r, energies, others, first, second, other.reader(theirs), one.units, scale * tolerance)
     return Difference(
@@ -235,6 +244,7 @@ def _difference(one: _Side, other: _Side, mine: str, theirs: str, tolerance: flo
         energy=energy,
         force=force,
         relative=relative,
+        force_relative=force_relative,
         explained_by=found,
         landmarks=_landmarks(replace(first, name=mine), second, one.units),
         start=float(r[0]),
@@ -253,6 +263,7 @@ def _apart(one: _Side, mine: str, theirs: str, other: _Side, found: Explained) -
         energy=energy,
         force=_largest(r, one.reader(mine)(r)[1], nothing),
         relative=energy[0] / TableFacts(first, one.units).energy_scale,
+        force_relative=0.0,
         explained_by=found,
         landmarks=_landmarks(first, other.rows[theirs], one.units),
         start=float(r[0]),

@@ -1,4 +1,4 @@
-"""What explains the difference of two curves: units, a shift, or the rows they are read from."""
+"""What explains the difference of two curves: units, shifts, or the rows they are read from."""
 
 from __future__ import annotations
 
@@ -8,6 +8,7 @@ from dataclasses import dataclass, replace
 import numpy as np
 from numpy.typing import NDArray
 
+from .checks import TableFacts
 from .checks.mistakes.evidence import weighted_median
 from .checks.mistakes.factors import ENERGIES, LENGTHS
 from .table import Rows
@@ -56,13 +57,76 @@ def explain(
         Difference of energy that counts as none.
     """
     size = np.maximum(np.abs(first), np.abs(second))
+    shifted = _of_shift(r, first, second, one, other, read, units, allowed)
     tries = [*_of_energy(first, second, units), *_of_length(r, first, one, other, read, units)]
     for found, left in tries:
         told = np.isfinite(left)
         enough = np.count_nonzero(told) > 0.3 * r.size
         if enough and np.all(np.abs(left[told]) <= allowed + REMAINING * size[told]):
             return found
-    return _of_rows(r, first, second, other) or _of_constant(first, second, allowed, units)
+    return shifted or _of_rows(r, first, second, other) or _of_constant(first, second, allowed, units)
+
+
+def explain_force(first: Array, second: Array, units: UnitSystem, allowed: float) -> Explained | None:
+    """Find what explains the difference of two forces whose energies agree.
+
+    Parameters
+    ----------
+    first, second : (n,) array
+        In the first file's units.
+    units : UnitSystem
+    allowed : float
+        Difference of force that counts as none.
+    """
+    usable = (np.abs(first) > 1e-6 * np.abs(first).max()) & (second != 0)
+    if np.count_nonzero(usable) < 3:
+        return None
+    gap = second - first
+    offset = float(np.median(gap))
+    if np.all(np.abs(gap - offset) <= allowed + 0.01 * np.abs(gap)):
+        says = f"The energies agree; the forces differ by the constant {offset:.9g} {units.force.text}."
+        return Explained("constant-force-offset", offset, says)
+    factor = weighted_median(second[usable] / first[usable], np.abs(first[usable]))
+    if not np.all(np.abs(second / factor - first) <= allowed + REMAINING * np.abs(first)):
+        return None
+    turned = ", with opposite signs" if factor < 0 else ""
+    says = f"The energies agree; the forces differ by the factor {abs(factor):.9g}{turned}"
+    for size, text in [(1.0, ""), *_force_units(units)]:
+        if abs(abs(factor) / size - 1) < 1e-6:
+            name = "force-in-other-units" if text else "force-sign-flipped"
+            between = f", as between {units.force.text} and {text}." if text else "."
+            return Explained(name, float(np.copysign(size, factor)), says + between)
+    counted = abs(np.log2(abs(factor))) - 1
+    return Explained("counted-twice" if abs(counted) < 1e-6 else "force-factor", factor, f"{says}.")
+
+
+def _force_units(units: UnitSystem) -> Iterator[tuple[float, str]]:
+    """Yield ratios between the unit of force and others, those that change one unit first."""
+    energies = [(float(units.energy.factor / unit(name).factor), name) for name in (units.energy.text, *ENERGIES)]
+    lengths = [(float(unit(name).factor / units.length.factor), name) for name in (units.length.text, *LENGTHS)]
+    both = [(a != 1 and b != 1, a * b, f"{one}/{other}") for a, one in energies for b, other in lengths]
+    for _, value, text in sorted(both, key=lambda entry: entry[0]):
+        if value != 1:
+            yield value, text
+            yield 1 / value, text
+
+
+def _of_shift(
+    r: Array, first: Array, second: Array, one: Rows, other: Rows, read: Reader, units: UnitSystem, allowed: float
+) -> Explained | None:
+    """Return the shift of all separations that brings the two wells together, if it explains the difference."""
+    places = [TableFacts(rows, units).landmarks.equilibrium_separation for rows in (one, other)]
+    if places[0] is None or places[1] is None or abs(places[1] / places[0] - 1) < 1e-6:
+        return None
+    shift = places[1] - places[0]
+    inside = (r + shift >= other.separation[0]) & (r + shift <= other.separation[-1])
+    if np.count_nonzero(inside) < 0.3 * r.size:
+        return None
+    left = np.abs(read(r[inside] + shift)[0] - first[inside])
+    if np.all(left <= allowed + 0.01 * np.abs(second - first)[inside]):
+        says = f"The separations differ by the constant {shift:.7g} {units.length.text}."
+        return Explained("separation-shift", shift, says)
+    return None
 
 
 def length_ratio(one: Rows, other: Rows, units: UnitSystem) -> Explained | None:

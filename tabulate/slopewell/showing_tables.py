@@ -25,19 +25,25 @@ def console() -> Console:
 def comparison_lines(found: Comparison) -> Iterator[str]:
     """Yield the lines that show a comparison."""
     energy, length, force = found.units.energy.text, found.units.length.text, found.units.force.text
+    units = dict.fromkeys(("equilibrium_separation", "zero_crossing"), length)
+    units |= {"well_depth": energy, "stiffness": found.units.per_length(2).text}
     for difference in found.differences:
         yield difference.interaction
         yield _line("compared", f"from {difference.start:.6g} to {difference.end:.6g} {length}")
         size, place = difference.energy
-        yield _line("largest difference", f"{size:.3g} {energy} at {place:.6g} {length}")
+        yield _line("largest difference", f"{size:.3g} {energy} at {place:.6g} {length}" if size else "none")
         if difference.force is not None:
             size, place = difference.force
-            yield _line("", f"{size:.3g} {force} at {place:.6g} {length}")
-        verdict = "within" if difference.relative <= found.tolerance else "beyond"
-        yield _line("over the energy scale", f"{difference.relative:.3g} ({verdict} {found.tolerance:.3g})")
+            if size:
+                yield _line("", f"{size:.3g} {force} at {place:.6g} {length}")
+        for label, part in (("energy", difference.relative), ("force", difference.force_relative)):
+            if label == "energy" or part > found.tolerance:
+                verdict = "within" if part <= found.tolerance else "beyond"
+                yield _line(f"over the {label} scale", f"{part:.3g} ({verdict} {found.tolerance:.3g})")
         for name, (first, second) in difference.landmarks.items():
             if first is not None or second is not None:
-                yield _line(name.replace("_", " "), f"{_number(first)} and {_number(second)}")
+                unit = units[name]
+                yield _line(name.replace("_", " "), f"{_number(first)} and {_number(second)} {unit}")
         if difference.explained_by is not None:
             yield _line("explained by", difference.explained_by.says)
         yield ""

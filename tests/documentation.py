@@ -7,6 +7,7 @@ from __future__ import annotations
 
 import contextlib
 import io
+import json
 import re
 from collections.abc import Callable, Iterator
 from dataclasses import dataclass
@@ -19,6 +20,7 @@ from typing import Any
 from layers import LAYERS
 from slopewell.checks import Check, register
 from slopewell.cli import main
+from slopewell.potential.mixing import RULES
 from slopewell.schemas import NAMES, schema
 
 ROOT = Path(__file__).parent.parent
@@ -57,6 +59,15 @@ def checks() -> str:
         rows = [f"| `{check.name}` | {check.title}. |" for check in listed]
         parts.append("\n".join([f"| check of a {subject} | what holds where it finds nothing |", "|---|---|", *rows]))
     return "\n\n".join(parts)
+
+
+def mixing() -> str:
+    """The mixing rules, the forms that each holds for, and where it was published."""
+    rows = [
+        f"| `{rule.name}` | {', '.join(f'`{form}`' for form in rule.mixes)} | {rule.source} |"
+        for rule in RULES.values()
+    ]
+    return "\n".join(["| mixing rule | holds for | source |", "|---|---|---|", *rows])
 
 
 def layers() -> str:
@@ -127,7 +138,7 @@ def _takes(part: dict[str, Any]) -> str:
 
 
 def _shown(value: Any) -> str:
-    return "empty" if value in ("", []) else f"`{value}`"
+    return "empty" if value in ("", []) else f"`{value if isinstance(value, str) else json.dumps(value)}`"
 
 
 def schema_tables() -> str:
@@ -155,7 +166,7 @@ SHOWN = (
     "plan samples/faulty/table-error.toml",
 )
 GENERATED: dict[str, dict[str, Callable[[], str]]] = {
-    "README.md": {"checks": checks} | {command: partial(shown, command) for command in SHOWN},
+    "README.md": {"checks": checks, "mixing": mixing} | {command: partial(shown, command) for command in SHOWN},
     "DEVELOPERS.md": {"layers": layers},
     "schemas/README.md": {"fields": schema_tables},
 }

@@ -8,9 +8,11 @@ import tomllib
 from importlib import import_module
 
 import pytest
+import slopewell
 from documentation import GENERATED, ROOT, generated
 from slopewell.cli import main, parser
 from slopewell.document import Source, understand
+from slopewell.reports.page import CAUTION
 
 README = (ROOT / "README.md").read_text(encoding="utf-8")
 
@@ -49,3 +51,11 @@ def test_every_linked_file_exists(link: str) -> None:
 def test_every_function_that_is_named_exists(name: str) -> None:
     module, function = name.split(".")
     assert callable(getattr(import_module(f"slopewell.{module}"), function))
+
+
+def test_every_function_of_the_package_is_listed() -> None:
+    assert set(re.findall(r"`slopewell\.([a-z_]+)`", README)) == set(slopewell.__all__)
+
+
+def test_the_page_cautions_in_the_same_words() -> None:
+    assert CAUTION in " ".join(README.split())

@@ -1,4 +1,4 @@
-"""Check interatomic potentials and write energy and force tables that are proved right."""
+"""Check interatomic potentials and write energy and force tables with proved error bounds."""
 
 from __future__ import annotations
 

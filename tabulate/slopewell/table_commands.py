@@ -16,7 +16,7 @@ GOOD, FOUND = 0, 1
 
 def foreign_options(command: argparse.ArgumentParser) -> None:
     """Add what describes a table that slopewell did not write."""
-    command.add_argument("--columns", metavar="NAMES", default="", help="such as row,separation,energy,force")
+    command.add_argument("--columns", metavar="NAMES", default="", help="such as separation,energy,force")
     command.add_argument("--units", metavar="ENERGY,LENGTH", default="", help="units of the table's columns")
     command.add_argument("--layout", metavar="FILE", default="", help="layout of the table, instead of columns")
     command.add_argument("--block", metavar="N", type=int, help="which block of rows to read, from 1")

@@ -236,7 +236,7 @@ def test_an_unknown_form_is_answered_with_the_nearest() -> None:
     [
         ("lennard-jones", "epsilon", Fraction(1, 10**9), Fraction(0), "above 0"),
         ("exp-6", "alpha", Fraction(71, 10), Fraction(7), "above 7"),
-        ("reaction-field", "epsilon_rf", Fraction(1), Fraction(999, 1000), "at least 1"),
+        ("reaction-field", "epsilon_outside", Fraction(1), Fraction(999, 1000), "at least 1"),
         ("hfd-b", "beta", Fraction(0), Fraction(1, 1000), "at most 0"),
     ],
 )

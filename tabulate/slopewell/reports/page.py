@@ -27,10 +27,10 @@ COMMON_UNITS = (("eV", "angstrom"), ("kJ/mol", "nm"), ("kcal/mol", "angstrom"), 
 POWERS = ((1, 0), (0, 1), (1, -1), (1, -2))
 """Powers of energy and length of every quantity that the page shows in several units."""
 CAUTION = (
-    "A table that passes says nothing about whether the potential suits the material. The checks hold "
-    "numbers against the formula and the limits stated here; they do not know what the simulation is for. "
-    "Where a result bears on safety, health or a building, the local codes and the judgement of a licensed "
-    "practitioner come first."
+    "A table that passes says that the numbers are what the document means. It says nothing about whether the "
+    "potential suits your material, your temperature or your question: that stays with the source of the potential, "
+    "with your own validation, and, where structures or safety depend on the result, with the codes that apply where "
+    "you work and with licensed practice."
 )
 
 
@@ -48,6 +48,8 @@ class Sheet:
         Where it comes from: labels and values.
     document : str
         The document's text.
+    note : str
+        Which of two files the verdict is about.
     """
 
     title: str
@@ -56,6 +58,7 @@ class Sheet:
     record: Mapping[str, Any] = field(default_factory=dict)
     facts: tuple[tuple[str, str], ...] = ()
     document: str = ""
+    note: str = ""
 
 
 def page(sheet: Sheet) -> str:
@@ -95,7 +98,7 @@ def _header(sheet: Sheet, systems: Sequence[UnitSystem]) -> Markup:
         [
             tag("h1", sheet.title),
             tag("p", "Source: ", sheet.source, class_="source") if sheet.source else Markup(""),
-            _verdict(sheet.record, len(sheet.drawings), _worst_first(sheet)),
+            _verdict(sheet.record, len(sheet.drawings), _worst_first(sheet), sheet.note),
             tag(
                 "p",
                 tag("label", "Units ", for_="units"),
@@ -106,7 +109,7 @@ def _header(sheet: Sheet, systems: Sequence[UnitSystem]) -> Markup:
     )
 
 
-def _verdict(record: Mapping[str, Any], interactions: int, below: Markup) -> Markup:
+def _verdict(record: Mapping[str, Any], interactions: int, below: Markup, note: str = "") -> Markup:
     verdict = str(record.get("verdict", "unchecked"))
     levels = [finding["level"] for finding in record.get("findings", ())]
     counts = ", ".join(plural(levels.count(level), level) for level in ("error", "warning", "note"))
@@ -115,7 +118,7 @@ def _verdict(record: Mapping[str, Any], interactions: int, below: Markup) -> Mar
     return tag(
         "div",
         tag("p", mark_of(verdict), " ", VERDICTS[verdict].words, class_="words"),
-        *([tag("p", looked)] if checked else []),
+        *(tag("p", text) for text in ((looked if checked else ""), note) if text),
         below,
         class_=f"verdict {verdict}",
     )

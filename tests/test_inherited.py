@@ -36,3 +36,18 @@ def test_mended_copy_passes_and_says_what_was_done(name: str, mistake: str, tmp_
 
     assert subject.verdict in ("pass", "warn")
     assert any(line.startswith(f"mended {mistake}") for line in done.table.history)
+
+
+@pytest.mark.parametrize(
+    ("name", "mistake", "says"),
+    [
+        ("water-water-sign", "force-sign-flipped", "sign of the force turned"),
+        ("water-water-units", "force-in-other-units", "force multiplied by 10"),
+        ("ion-water-over-r", "force-divided-by-separation", "force multiplied by the separation"),
+        ("ion-water-twice", "counted-twice", "force divided by 2"),
+        ("polymer-polymer-offset", "constant-force-offset", "0.226608 kJ/mol/nm added to the force"),
+    ],
+)
+def test_history_says_it_in_the_words_of_the_trade(name: str, mistake: str, says: str) -> None:
+    done = convert(FOLDER / f"{name}.dat", None, Changes(mend=mistake), reading=READING)
+    assert done.table.history[-1] == f"mended {mistake} in {name}: {says}"

@@ -78,6 +78,7 @@ def test_a_document_and_its_table_over_each_other(pair: Path, table: Path) -> No
     path, shown = sheet([pair, table])
     assert path.name == "pair-and-pair.html"
     assert shown.drawings[0].other.energy == pytest.approx(shown.drawings[0].energy, abs=1e-4)
+    assert f"This is about pair.toml; {table.name} is only drawn over it." in path.read_text(encoding="utf-8")
 
 
 def test_one_interaction_of_many(tmp_path: Path) -> None:

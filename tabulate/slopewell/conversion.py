@@ -167,9 +167,9 @@ def changed(table: Table, changes: Changes) -> tuple[Table, dict[str, tuple[floa
         made, errors = resampled(old, wanted, table.units.length)
         rows.append(made)
         added[old.name] = errors
-    counts = ", ".join(f"{made.name} {made.separation.size}" for made in rows)
+    counts = ", ".join(f"{made.separation.size} new rows of {made.name}" for made in rows)
     rule = rows[0].interpolation
-    says = f"new rows ({counts}) even in {rows[0].spacing}, read from the old ones by {rule}"
+    says = f"{counts} even in {rows[0].spacing}, read from the old ones by {rule}"
     return replace(table, interactions=tuple(rows), history=(*table.history, says)), added
 
 

@@ -159,5 +159,9 @@ def compared(first: Sheet, second: Sheet) -> Sheet:
         first,
         title=f"{first.title}, compared with {labels[1]}",
         drawings=tuple(overlaid(drawing, other, labels) for drawing, other in pairs),
-        facts=(*first.facts, ("Compared with", f"{files[1]} ({second.title})")),
+        facts=(
+            *first.facts,
+            ("Compared with", files[1] if second.title == files[1] else f"{files[1]} ({second.title})"),
+        ),
+        note=f"This is about {files[0]}; {files[1]} is only drawn over it.",
     )

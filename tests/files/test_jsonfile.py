@@ -3,9 +3,11 @@
 from __future__ import annotations
 
 import json
+from dataclasses import replace
 from pathlib import Path
 from typing import Any
 
+import numpy as np
 import pytest
 from slopewell.files import jsonfile
 from slopewell.problems import UnusableInput
@@ -47,3 +49,12 @@ def test_columns_in_columns_are_refused(tmp_path: Path) -> None:
 
 def test_another_schema_is_said(tmp_path: Path) -> None:
     assert refused(tmp_path, lambda data: data.update(schema="slopewell/table/9")).startswith("schema: ")
+
+
+def test_a_number_that_is_not_finite_is_refused(tmp_path: Path) -> None:
+    table = small_table()
+    rows = table.interactions[0]
+    assert rows.energy is not None
+    wild = replace(table, interactions=(replace(rows, energy=np.full(rows.energy.size, np.nan)),))
+    with pytest.raises(UnusableInput, match="not finite"):
+        jsonfile.write(wild, tmp_path / "pair.json")

@@ -22,10 +22,12 @@ def look(facts: PotentialFacts) -> Iterator[Finding]:
     broken = ~np.isfinite(values).all(axis=0)
     if broken.any():
         places = facts.probes[broken]
+        first, last = (f"{facts.length(float(place)):.6g}" for place in (places[0], places[-1]))
+        where = f"at {first}" if first == last else f"from {first} to {last}"
         yield Finding(
             level=ERROR,
-            says="Energy or force has no finite value here: a pole, an overflow, or a root or logarithm of a "
-            "negative number.",
+            says=f"Energy or force has no finite value {where} {facts.units.length.text}: a pole, an overflow, "
+            "or a root or logarithm of a negative number.",
             remedy="Check parameters and units; start the grid further out, or end it before the pole.",
             start=facts.length(float(places[0])),
             end=facts.length(float(places[-1])),

@@ -19,11 +19,22 @@ RULES = ("spacing", "interpolation", "ends")
 
 
 def write(table: Table, path: Path) -> None:
-    """Write a table to a JSON file; the same table gives the same bytes."""
+    """Write a table to a JSON file; the same table gives the same bytes.
+
+    Raises
+    ------
+    UnusableInput
+        If a number is not finite, or the file can't be written.
+    """
     head = provenance(table)
     head["units"] = {"energy": table.units.energy.text, "length": table.units.length.text}
     head["interactions"] = {rows.name: _record(rows) for rows in table.interactions}
-    write_text(path, json.dumps(head, ensure_ascii=False, allow_nan=False) + "\n")
+    try:
+        text = json.dumps(head, ensure_ascii=False, allow_nan=False)
+    except ValueError:
+        says = "The table holds numbers that are not finite, which JSON can't."
+        raise UnusableInput([Problem("", says, "Mend the rows, or write HDF5 or CSV.")], str(path)) from None
+    write_text(path, f"{text}\n")
 
 
 def _record(rows: Rows) -> dict[str, Any]:

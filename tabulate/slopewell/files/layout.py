@@ -141,7 +141,7 @@ def _field_problems(line: str, at: str, number: int | None) -> list[Problem]:
 def write(table: Table, path: Path, layout: Layout) -> None:
     """Write the table's one interaction as text."""
     (rows,) = table.interactions
-    fields = _fields(table, rows)
+    fields = _fields(table, rows) | {"title": table.title or path.name}
     columns = columns_of(rows, layout.quantities)
     with whole_file(path) as temporary, temporary.open("w", encoding="utf-8", newline="\n") as file:
         file.writelines(f"{line.format(**fields)}\n" for line in layout.head)

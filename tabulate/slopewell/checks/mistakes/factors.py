@@ -144,19 +144,10 @@ def unit_readings(evidence: Evidence, factor: Factor) -> tuple[float, str] | Non
     for ratio, first, second in _ratios(ENERGIES):
         # A force that is too large is in the smaller unit, or the energy is in the larger one.
         far = 0.0 if own_energy in (first, second) else 1.0
-        says = (
-            f"the force is in {second} where the energy is in {first}, or the energy in {first} where "
-            f"the force is in {second}"
-        )
-        found.append((ratio, far, says))
+        found.append((ratio, far, f"the force is in {second} and the energy in {first}"))
     for ratio, first, second in _ratios(LENGTHS):
         far = 0.0 if own_length in (first, second) else 1.0
-        says = (
-            f"the force is per {second} where the separation is in {first}, or the separation is in "
-            f"{first} where the "
-            f"force is per {second}"
-        )
-        found.append((1 / ratio, far, says))
+        found.append((1 / ratio, far, f"the force is per {second} and the separation in {first}"))
     near = _nearest(found, wanted, factor.tolerance)
     if not near:
         found = [
@@ -176,7 +167,7 @@ def unit_readings(evidence: Evidence, factor: Factor) -> tuple[float, str] | Non
 
 def _both(energy: str, other_energy: str, length: str, other_length: str) -> str:
     force = f"{other_energy}/{other_length}"
-    return f"the force is in {force} where energy and separation are in {energy} and {length}"
+    return f"the force is in {force}, energy and separation in {energy} and {length}"
 
 
 def _nearest(found: list[tuple[float, float, str]], wanted: float, tolerance: float) -> list[tuple[float, float, str]]:

@@ -39,10 +39,24 @@ def divide(evidence: Evidence, explanation: Explanation) -> Columns:
     with np.errstate(all="ignore"):
         shape = explanation.scale
         force = evidence.force / shape
-    says = f"force divided by {float(explanation.measured or 1.0)!r}" + (
-        "" if np.ptp(shape) == 0 else " and by the power of the separation that it carried"
-    )
-    return Columns(evidence.separation, evidence.energy, force, says)
+    return Columns(evidence.separation, evidence.energy, force, _division(evidence, explanation))
+
+
+def _division(evidence: Evidence, explanation: Explanation) -> str:
+    """Return what a division did, such as "force multiplied by the separation"."""
+    factor = float(explanation.measured or 1.0)
+    shape = np.broadcast_to(np.asarray(explanation.scale) / factor, evidence.separation.shape)
+    constant = np.ptp(shape) == 0
+    steps = []
+    if abs(factor) != 1 or (constant and factor == 1):
+        small = abs(factor) < 1
+        steps.append(f"multiplied by {1 / abs(factor):.9g}" if small else f"divided by {abs(factor):.9g}")
+    if not constant:
+        grows = shape[-1] > shape[0]
+        steps.append("divided by the separation" if grows else "multiplied by the separation")
+    says = f"force {' and '.join(steps)}" if steps else ""
+    turned = "sign of the force turned" if factor < 0 else ""
+    return ", ".join(part for part in (says, turned) if part)
 
 
 def exchange(evidence: Evidence, explanation: Explanation) -> Columns:
@@ -56,7 +70,9 @@ def exchange(evidence: Evidence, explanation: Explanation) -> Columns:
 def subtract(evidence: Evidence, explanation: Explanation) -> Columns:
     """Take the offset off the forces."""
     offset = np.where(np.isfinite(explanation.scale), explanation.scale, 0.0)
-    says = f"force reduced by {explanation.measured!r} {explanation.unit}"
+    size = float(explanation.measured or 0.0)
+    way = "added to" if size < 0 else "taken off"
+    says = f"{abs(size):.6g} {explanation.unit} {way} the force"
     return Columns(evidence.separation, evidence.energy, evidence.force - offset, says)
 
 

@@ -133,7 +133,7 @@ def test_an_unknown_check_is_refused_before_anything_is_read(tmp_path: Path) -> 
     ("outputs", "says"),
     [
         ("", "The document names no output"),
-        ('[[output]]\nfile = "a.h5"\n[[output]]\nfile = "a.h5"\n', "is written twice"),
+        ('[[output]]\nfile = "a.h5"\n[[output]]\nfile = "a.h5"\n', r"would overwrite output\[0\]"),
         ('[[output]]\nfile = "a.dat"\nlayout = "none.toml"\n', "can't be read"),
     ],
 )

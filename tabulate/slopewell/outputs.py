@@ -16,6 +16,7 @@ from . import __version__
 from .checks import PotentialFacts
 from .document import Document, Output
 from .files import Layout, format_of, layout, read_layout
+from .files.csvfile import sidecar
 from .problems import Problem, UnusableInput
 from .table import Rows, Table, tabulate_rows
 from .table.proof import last_places_off, rows_to_prove
@@ -37,6 +38,12 @@ class Target:
     write: Callable[[Table, Path], None]
     read: Callable[[Path], Table]
 
+    @property
+    def paths(self) -> tuple[Path, ...]:
+        """Every file that is written, the metadata of a CSV file among them."""
+        beside = (sidecar(self.path),) if self.layout is None and self.path.suffix.lower() == ".csv" else ()
+        return (self.path, *beside)
+
 
 def targets(document: Document, into: Path) -> list[Target]:
     """Return the files that a document asks for.
@@ -49,20 +56,23 @@ def targets(document: Document, into: Path) -> list[Target]:
     if not document.outputs:
         problem = Problem("output", "The document names no output.", 'Add [[output]] with file = "tables.h5".')
         raise UnusableInput([problem], document.file)
+    taken = {Path(document.file).resolve(): "the document itself"}
     found: list[Target] = []
     for index, output in enumerate(document.outputs):
-        found += _targets_of(document, output, into)
-        paths = [target.path for target in found]
-        if len(set(paths)) < len(paths):
-            says = f'"{output.file}" is written twice.'
-            raise UnusableInput([Problem(f"output[{index}].file", says, "Choose another name.")], document.file)
+        for target in _targets_of(document, output, index, into):
+            for path in target.paths:
+                if path.resolve() in taken:
+                    says = f'"{output.file}" would overwrite {taken[path.resolve()]}.'
+                    raise UnusableInput([Problem(f"output[{index}].file", says, "Choose another name.")], document.file)
+                taken[path.resolve()] = f"output[{index}]" if target.path == path else f"metadata of output[{index}]"
+            found.append(target)
     return found
 
 
-def _targets_of(document: Document, output: Output, into: Path) -> list[Target]:
+def _targets_of(document: Document, output: Output, index: int, into: Path) -> list[Target]:
     pairs = [interaction.potential for interaction in document.interactions]
     if output.layout:
-        chosen = read_layout(Path(document.file).parent / output.layout)
+        chosen = _layout(document, output, index)
         units = output.units or chosen.units or document.units
         write, read = partial(layout.write, layout=chosen), partial(layout.read, layout=chosen, units=units)
         return [
@@ -78,6 +88,16 @@ def _targets_of(document: Document, output: Output, into: Path) -> list[Target]:
         Target(into / output.file_for(pair.between), (pair.name,), units, None, known.write, known.read)
         for pair in pairs
     ]
+
+
+def _layout(document: Document, output: Output, index: int) -> Layout:
+    """Return the layout of an output; what is wrong with it is a problem of the document."""
+    try:
+        return read_layout(Path(document.file).parent / output.layout)
+    except UnusableInput as error:
+        place = f"output[{index}].layout"
+        problems = [replace(p, at=f"{place}: {p.at}" if p.at else place, line=None) for p in error.problems]
+        raise UnusableInput(problems, document.file) from None
 
 
 def unit_systems(found: list[Target]) -> list[UnitSystem]:

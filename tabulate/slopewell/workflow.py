@@ -9,7 +9,7 @@ from typing import Any
 
 from .checks import POTENTIAL_CHECKS, Finding, PotentialFacts, potential_facts, run_checks
 from .document import Document, read_document
-from .outputs import certified_rows
+from .outputs import certified_rows, targets
 from .problems import UnusableInput
 from .reports import Report, Subject, certificate_record, potential_landmarks, unusable
 from .reports.origins import pair_records
@@ -57,6 +57,8 @@ def _check_file(file: str, reading: Reading, every_row: bool, track: Track) -> S
         if is_table(file, reading):
             return check_loaded(load(file, reading), file)
         document = read_document(file)
+        if document.outputs:
+            targets(document, Path(file).parent)
         subject, facts = check_document(document, track=track)
         return _prove(subject, facts, track) if every_row else subject
     except UnusableInput as error:

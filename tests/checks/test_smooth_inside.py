@@ -84,13 +84,15 @@ def test_the_known_jump_of_a_published_form_is_reported(tmp_path: Path) -> None:
     assert finding.measured / 8.617333262e-5 == pytest.approx(2.6228, rel=1e-4)
 
 
-def test_without_a_scale_a_jump_can_not_be_judged(tmp_path: Path) -> None:
+def test_without_a_scale_every_jump_counts_and_the_finding_says_why(tmp_path: Path) -> None:
     document = text(
         'energy = "where(r < a, e*a/r, 2*e*a/r)"\nparameters = { e = "1 eV", a = "5 angstrom" }\n',
         head=HEAD.replace('temperature = "100 K"\n', ""),
     )
-    with pytest.raises(ValueError, match="neither a temperature nor a well"):
-        list(CHECK.look(facts(document, tmp_path)))
+    findings = list(CHECK.look(facts(document, tmp_path)))
+    assert [finding.limit for finding in findings] == [0.0] * len(findings)
+    assert findings[0].level == "error"
+    assert "no temperature and no energy-scale" in findings[0].says
 
 
 def test_the_scale_is_the_stated_one_then_the_thermal_one_then_the_depth(tmp_path: Path) -> None:

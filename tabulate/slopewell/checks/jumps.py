@@ -9,7 +9,6 @@ from itertools import pairwise
 
 from ..formula.balls import ball, precision, series
 from ..formula.tree import ZERO, Tree
-from ..problems import Problem, UnusableInput
 from .findings import ERROR, NOTE, WARNING, Finding
 from .potential_facts import PotentialFacts
 
@@ -23,6 +22,11 @@ REASONS = {
     "dynamics": "dynamics needs a continuous force, else it does not conserve energy",
     "lattice-dynamics": "lattice dynamics needs a continuous stiffness",
 }
+
+
+UNSCALED = (
+    " Nothing tells how large that is: the curve has no well, and the document no temperature and no energy-scale."
+)
 
 
 @dataclass(frozen=True, slots=True)
@@ -66,17 +70,20 @@ def judge(facts: PotentialFacts, edge: Edge, where: str, remedy: str) -> Iterato
     for order, jump in enumerate(jumps(edge, highest)):
         if jump == 0.0:
             continue
-        limit = THRESHOLD * _scale(facts) / float(facts.potential.reach) ** order
+        limit = THRESHOLD * (facts.energy_scale or 0.0) / float(facts.potential.reach) ** order
         if not abs(jump) > limit:
             continue
         level = ERROR if order <= needed else WARNING if order == needed + 1 else NOTE
         unit = facts.units.per_length(order)
         size = facts.energy(abs(jump), order)
         place = facts.length(float(edge.at))
+        unscaled = "" if facts.energy_scale else UNSCALED
         yield Finding(
             level=level,
             says=f"The {QUANTITIES[order]} jumps by {size:.4g} {unit.text} {where} at {place:.6g} "
-            f"{facts.units.length.text}" + (f"; {REASONS[facts.potential.purpose]}." if level == ERROR else "."),
+            f"{facts.units.length.text}"
+            + (f"; {REASONS[facts.potential.purpose]}." if level == ERROR else ".")
+            + unscaled,
             remedy=remedy,
             start=place,
             end=place,
@@ -87,7 +94,7 @@ def judge(facts: PotentialFacts, edge: Edge, where: str, remedy: str) -> Iterato
 
 
 def jumps(edge: Edge, highest: int) -> list[float]:
-    """Return by how much energy and derivatives change across an edge; exactly 0 where nothing is proved to jump."""
+    """Return by how much energy and derivatives change across an edge; exactly 0 unless they provably do."""
     inside, outside = (series(tree, ball(edge.at), highest) for tree in (edge.inside, edge.outside))
     result = []
     factorial = 1
@@ -97,10 +104,3 @@ def jumps(edge: Edge, highest: int) -> list[float]:
             jump = (outside[order] - inside[order]) * factorial
             result.append(0.0 if jump.contains(0) else float(jump.mid()))
     return result
-
-
-def _scale(facts: PotentialFacts) -> float:
-    if facts.energy_scale is None:
-        says = f"{facts.potential.name} has a jump, and neither a temperature nor a well to judge it by."
-        raise UnusableInput([Problem("energy-scale", says, 'Add temperature = "…" or energy-scale = "…".')])
-    return facts.energy_scale

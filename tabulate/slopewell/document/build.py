@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+import re
 from fractions import Fraction
 from pathlib import Path
 from typing import Any
@@ -145,6 +146,9 @@ class _Builder:
         units = read_units(self.notes, f"{path}.units", given["units"]) if "units" in given else None
         output = Output(given["file"], given.get("layout", ""), units)
         several = count > 1
+        if re.search("[{}]", re.sub(r"\{[ab]\}", "", output.file)):
+            says = f'"{output.file}" has a brace that is neither {{a}} nor {{b}}.'
+            self.notes.add(f"{path}.file", says, "Only the species {a} and {b} are filled in.")
         holds_all = not output.layout and output.file.lower().endswith((".h5", ".hdf5", ".json"))
         if not output.layout and not output.file.lower().endswith((".h5", ".hdf5", ".json", ".csv")):
             says = f'The ending of "{output.file}" names no format.'

@@ -176,7 +176,7 @@ def _check_dimensions(notes: Notes, path: str, texts: dict[str, str], trees: dic
         except FormulaError as error:
             notes.take(f"{path}.{key}", error)
             continue
-        if found != wanted[key]:
+        if found is not None and found != wanted[key]:
             says = f"The formula gives {describe(found)}; {describe(wanted[key])} is expected."
             notes.add(f"{path}.{key}", says, _slip(key, found), texts[key] if len(texts[key]) < 100 else "")
 

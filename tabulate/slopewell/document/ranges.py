@@ -13,6 +13,8 @@ from .model import Grid
 from .setting import Setting
 from .values import Notes, read_quantity
 
+FEWEST = 4
+"""Rows of a cubic spline, whatever its ends."""
 TOLERANCES = (("tolerance", "energy"), ("force-tolerance", "energy length^-1"))
 
 
@@ -32,6 +34,10 @@ def read_grid(notes: Notes, path: str, entry: Mapping[str, Any], setting: Settin
         return None
     if end <= start:
         notes.add(f"{place}.to", "The grid ends before it starts.", "Let to be larger than from.")
+        return None
+    if given.get("interpolation") == "cubic-spline" and given.get("rows", FEWEST) < FEWEST:
+        says = f"A cubic spline needs {FEWEST} rows at least."
+        notes.add(f"{place}.rows", says, "Give more rows, or read by another rule.")
         return None
     tolerances = [_tolerance(notes, f"{place}.{key}", given.get(key), powers, units) for key, powers in TOLERANCES]
     return Grid(
@@ -66,16 +72,18 @@ def read_cutoff(
         return None
     at = read_quantity(notes, f"{place}.at", given["at"], "length", setting.units)
     start = read_quantity(notes, f"{place}.from", given["from"], "length", setting.units) if "from" in given else None
-    if at is None or grid is None or ("from" in given and start is None):
+    if at is None or ("from" in given and start is None):
+        return None
+    if given["treatment"] in SWITCHED and (start is None or not 0 < start < at):
+        says = "The switch must start above zero and before the cutoff."
+        notes.add(f"{place}.from", says, "Let from be smaller than at.")
+        return None
+    if grid is None:
         return None
     if at > grid.end:
         notes.add(f"{place}.at", "The cutoff lies beyond the end of the grid.", "Let the grid reach the cutoff.")
         return None
     if at <= grid.start:
         notes.add(f"{place}.at", "The cutoff lies before the start of the grid.", "Start the grid closer in.")
-        return None
-    if given["treatment"] in SWITCHED and (start is None or not 0 < start < at):
-        says = "The switch must start above zero and before the cutoff."
-        notes.add(f"{place}.from", says, "Let from be smaller than at.")
         return None
     return Cutoff(at, given["treatment"], start, given.get("continuity", 2))

@@ -116,9 +116,19 @@ def _refuse_constant(name: str) -> Any:
     raise ValueError(f"{name} is not a number of JSON")
 
 
+def _once(pairs: list[tuple[str, Any]]) -> dict[str, Any]:
+    """Return the table of key and value pairs, refusing a key that stands twice."""
+    table: dict[str, Any] = {}
+    for key, value in pairs:
+        if key in table:
+            raise ValueError(f"the key {key} stands twice in one table")
+        table[key] = value
+    return table
+
+
 def _json(text: str, file: str) -> Any:
     try:
-        return json.loads(text, parse_float=_decimal, parse_constant=_refuse_constant)
+        return json.loads(text, parse_float=_decimal, parse_constant=_refuse_constant, object_pairs_hook=_once)
     except json.JSONDecodeError as error:
         at = f"line {error.lineno}, column {error.colno}"
         says = f"This is not valid JSON: {error.msg[0].lower()}{error.msg[1:]}."
@@ -129,11 +139,13 @@ def _json(text: str, file: str) -> Any:
 
 
 def _outsize_numbers(value: Any, path: str) -> list[Problem]:
-    """Find numbers that no table could hold: infinities, and those beyond the range of doubles."""
+    """Find what no table could hold: infinities, numbers beyond the range of doubles, NUL characters."""
     if isinstance(value, dict):
         return [p for key, part in value.items() for p in _outsize_numbers(part, f"{path}.{key}" if path else key)]
     if isinstance(value, list):
         return [p for index, part in enumerate(value) for p in _outsize_numbers(part, f"{path}[{index}]")]
+    if isinstance(value, str) and "\0" in value:
+        return [Problem(path, "The text holds a NUL character, which no file format can store.", "Take it out.")]
     outsize = isinstance(value, Decimal) and (not value.is_finite() or abs(value.adjusted()) > LARGEST_EXPONENT)
     if outsize or (isinstance(value, int) and abs(value) > 10**LARGEST_EXPONENT):
         shown = str(value) if len(str(value)) < 30 else "This number"

@@ -23,7 +23,10 @@ class Notes:
 
     def add(self, path: str, says: str, remedy: str, excerpt: str = "") -> None:
         """Note a problem at a key path."""
-        self.problems.append(Problem(path, says, remedy, excerpt, self.source.line(path)))
+        problem = Problem(path, says, remedy, excerpt, self.source.line(path))
+        # A grid that several interactions share is one fault, not several.
+        if problem not in self.problems:
+            self.problems.append(problem)
 
     def take(self, path: str, error: UnusableInput) -> None:
         """Note the problems of an error at a key path."""

@@ -15,7 +15,7 @@ import numpy as np
 from ..problems import Problem, UnusableInput
 from ..table import Rows, Table
 from ..units import UnitSystem, unit_system
-from .atomic import write_text
+from .atomic import whole_file
 from .provenance import provenance, table_from
 
 RULES = ("spacing", "interpolation", "ends")
@@ -35,9 +35,11 @@ def write(table: Table, path: Path) -> None:
     columns = rows.columns()
     lines = [",".join(columns)]
     lines += map(",".join, zip(*(map(repr, column.tolist()) for column in columns.values()), strict=True))
-    # The sidecar first: rows without their units would be the worse half to be left with.
-    write_text(sidecar(path), json.dumps(_metadata(table, rows, path), indent=1, ensure_ascii=False) + "\n")
-    write_text(path, "\r\n".join(lines) + "\r\n")
+    metadata = json.dumps(_metadata(table, rows, path), indent=1, ensure_ascii=False) + "\n"
+    # Both are written before either takes its place: one without the other would be worth little.
+    with whole_file(sidecar(path)) as beside, whole_file(path) as temporary:
+        beside.write_text(metadata, encoding="utf-8", newline="\n")
+        temporary.write_text("\r\n".join(lines) + "\r\n", encoding="utf-8", newline="")
 
 
 def sidecar(path: Path) -> Path:

@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+import io
 import json
 from pathlib import Path
 from typing import Any
@@ -22,7 +23,9 @@ def write(table: Table, path: Path) -> None:
     """Write a table to an HDF5 file; the same table gives the same bytes."""
     import h5py
 
-    with whole_file(path) as temporary, h5py.File(temporary, "w", libver=("earliest", "v110")) as file:
+    # Made in memory: the HDF5 library does not survive a full disk.
+    image = io.BytesIO()
+    with h5py.File(image, "w", libver=("earliest", "v110")) as file:
         for key, value in provenance(table).items():
             if key != "report":
                 file.attrs[key] = value if isinstance(value, str) else json.dumps(value, ensure_ascii=False)
@@ -30,6 +33,8 @@ def write(table: Table, path: Path) -> None:
         interactions = file.create_group("interactions", track_order=True)
         for rows in table.interactions:
             _write_rows(interactions.create_group(rows.name), rows, table.units)
+    with whole_file(path) as temporary:
+        temporary.write_bytes(image.getbuffer())
 
 
 def copy_group(source: Any, target: Any) -> None:

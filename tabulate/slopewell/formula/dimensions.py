@@ -27,13 +27,17 @@ def dimension(tree: Tree, text: str, known: Mapping[str, Dimension], values: Map
     values : mapping of str to Fraction
         Values of dimensionless names, needed where a power of a dimension is one of them.
 
+    Returns
+    -------
+    UnitsContainer or None
+        None for a formula that is zero, which has every dimension.
+
     Raises
     ------
     FormulaError
         At the operator or function whose operands do not fit.
     """
-    found = _Reading(text, known, values).of(tree)
-    return _Reading.plain(known) if found is ANY else found
+    return _Reading(text, known, values).of(tree)
 
 
 ANY = None

@@ -181,7 +181,7 @@ class _Parser:
     def expression(self, root: ast.expr) -> Tree:
         try:
             tree = self.read(root)
-            fits = depth(tree) <= DEEPEST
+            fits = depth(tree) <= 3 * DEEPEST
         except RecursionError:
             fits = False
         if not fits:

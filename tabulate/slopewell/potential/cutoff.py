@@ -51,6 +51,13 @@ class Cutoff:
     start: Fraction | None = None
     continuity: int = 2
 
+    @property
+    def zeros(self) -> int:
+        """How many of energy, force, stiffness and so on the treatment makes zero at the cutoff."""
+        if self.treatment in SWITCHED:
+            return self.continuity + 1 + (self.treatment == "force-switch")
+        return SHIFTED[self.treatment] + 1
+
 
 def treat(curve: Curve, cutoff: Cutoff, end: Fraction) -> Curve:
     """Return a curve as the simulation sees it: treated up to the cutoff, exactly zero beyond.

@@ -127,7 +127,8 @@ def _point(piece: Piece, root: Ball) -> tuple[float, float, float]:
 
 def _pull(piece: Piece, place: Ball) -> tuple[float, float]:
     slope = series(piece.tree, ball(nearest_fraction(place)), 1)[1]
-    force = -float(slope.mid()) if slope.is_finite() else 0.0
+    # A force that can't be told from zero is rounding, no attraction.
+    force = -float(slope.mid()) if slope.is_finite() and not slope.contains(0) else 0.0
     return float(place.mid()), force
 
 

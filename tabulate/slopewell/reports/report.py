@@ -128,14 +128,19 @@ def _finite(value: float | None) -> float | None:
     return value if value is not None and isfinite(value) else None
 
 
+def _clean(value: float | None, unit: float) -> float | None:
+    """Return a value in a unit, without the last digit that conversion spoils; None if it is not finite."""
+    return None if value is None or not isfinite(value / unit) else float(f"{value / unit:.15g}")
+
+
 def landmark_record(name: str, units: UnitSystem, landmarks: Landmarks) -> dict[str, Any]:
     """Return landmarks as JSON data in the given units."""
 
     def length(value: float | None) -> float | None:
-        return None if value is None else value / float(units.length.factor)
+        return _clean(value, float(units.length.factor))
 
     def energy(value: float | None, power: int = 0) -> float | None:
-        return None if value is None else value / float(units.per_length(power).factor)
+        return _clean(value, float(units.per_length(power).factor))
 
     pull = landmarks.largest_attraction
     return {

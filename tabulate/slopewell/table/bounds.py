@@ -68,7 +68,9 @@ class ErrorBounds:
     def __init__(self, curve: Curve, grid: Grid) -> None:
         self.curve = curve.within(grid.start, grid.end)
         self.grid = grid
-        self.stretches = first_stretches(curve, grid.start, grid.end)
+        self.coarse = first_stretches(curve, grid.start, grid.end)
+        self.stretches = list(self.coarse)
+        self.known: dict[tuple[float, float], tuple[Stretch, Stretch]] = {}
 
     def bound(
         self, rows: int, spacing: str, rule_name: str, ends: str = "clamped", rounding: Rounding = EXACT
@@ -109,6 +111,8 @@ class ErrorBounds:
         return energy
 
     def _setting(self, rows: int, spacing: str, rule_name: str, ends: str) -> tuple[Rule, Spacing, SlopeErrors]:
+        # Each bound starts from the coarse stretches, so that it does not depend on what was asked before.
+        self.stretches = list(self.coarse)
         grid = Spacing(float(self.grid.start), float(self.grid.end), rows, spacing)
         slopes = self.slopes(grid, ends) if rule_name == "cubic-spline" else NO_SLOPE_ERRORS
         return RULES[rule_name], grid, slopes
@@ -137,7 +141,7 @@ class ErrorBounds:
                 bound = min(sizes[top][0], directly(top))
                 sizes[top], reached = (bound, bound / SHARP), max(reached, bound / SHARP)
                 continue
-            self.stretches[widest : widest + 1] = self.stretches[widest].halves()
+            self.stretches[widest : widest + 1] = self._halves(self.stretches[widest])
             sizes[widest : widest + 1] = [size(widest), size(widest + 1)]
             changed = {widest, widest + 1, top + (top > widest)}
             sizes[top + (top > widest)] = size(top + (top > widest))
@@ -145,6 +149,12 @@ class ErrorBounds:
         top = max(range(len(sizes)), key=sizes.__getitem__)
         part = self.stretches[top]
         return sizes[top][0], (part.low + part.high) / 2
+
+    def _halves(self, part: Stretch) -> tuple[Stretch, Stretch]:
+        key = part.low, part.high
+        if key not in self.known:
+            self.known[key] = part.halves()
+        return self.known[key]
 
     def _to_cut(self, top: int, grid: Spacing) -> int | None:
         """Return the widest stretch that the bound of one depends on; None if all are finer than the rows."""

@@ -10,6 +10,7 @@ from numpy.typing import NDArray
 from ..document import Grid
 from ..formula.pairs import converted, pair
 from ..potential import Curve, Potential
+from ..potential.curve import SNAP
 from ..units import UnitSystem
 from .grid import separations
 from .model import Rows
@@ -32,6 +33,11 @@ def tabulate_rows(potential: Potential, grid: Grid, rows: int, units: UnitSystem
     r = separations(grid.start, grid.end, rows, grid.spacing, units.length)
     order = 2 if grid.interpolation == "quintic-hermite" else 1
     columns = evaluate(potential.treated, r, order, units)
+    if potential.cutoff is not None:
+        # A cutoff in other units may lie a rounding beside its row, where its zeros would be 1e-49.
+        at = np.abs(r * float(units.length.factor / potential.cutoff.at) - 1) <= SNAP
+        for column in columns[: potential.cutoff.zeros]:
+            column[at] = 0.0
     return Rows(
         name=potential.name,
         separation=r,

@@ -173,6 +173,10 @@ def _canonical(plain: str, factor: Fraction, dimension: Dimension) -> str:
     return _canonical_factors().get((factor, dimension), plain)
 
 
+LARGEST = 10**300
+"""Size of a quantity in internal units that doubles still hold."""
+
+
 def quantity(text: str) -> Quantity:
     """Return the quantity that a text such as ``"41.9 hartree bohr^6"`` states.
 
@@ -185,7 +189,10 @@ def quantity(text: str) -> Quantity:
     if not found:
         raise UnitError(f'"{text[:60]}" is not a number with a unit.', 'Write it like "0.47 nm".')
     named = unit(found.group(2))
-    return Quantity(Fraction(found.group(1)) * named.factor, named.dimension)
+    value = Fraction(found.group(1)) * named.factor
+    if abs(value) > LARGEST:
+        raise UnitError(f'"{text[:60]}" is beyond the range of doubles.', "Give a number within ±1e300.")
+    return Quantity(value, named.dimension)
 
 
 def temperature(text: str) -> Fraction:

@@ -39,7 +39,7 @@ def test_the_command_of_the_readme_writes_every_output(tmp_path: Path) -> None:
         numbers = file["interactions/W-P"]
         assert numbers["energy"].attrs["units"] == "eV"
         text_rows = np.loadtxt(tmp_path / into / "W-P.dat")
-        assert text_rows[:, 2] == pytest.approx(numbers["energy"][()], rel=1e-15)
+        assert text_rows[:, 1] == pytest.approx(numbers["energy"][()], rel=1e-15)
 
 
 def test_the_script_that_is_installed_is_the_same_program(tmp_path: Path) -> None:

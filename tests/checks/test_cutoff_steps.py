@@ -68,3 +68,13 @@ def test_a_tail_just_above_the_limit_does_not(tmp_path: Path) -> None:
     document = text(REDUCED, cutoff="", grid=short, head=f'{HEAD}energy-scale = "1 eV"\n')
     (energy, *_) = CHECK.look(facts(document, tmp_path))
     assert (energy.level, energy.measured) == ("error", pytest.approx(4 / 12.5**6, rel=1e-5))
+
+
+@pytest.mark.parametrize(
+    ("treatment", "offered"),
+    [('"truncate"', '"shifted-force"'), ('"shifted-force"', '"shifted-stiffness"')],
+)
+def test_the_remedy_is_not_what_is_already_in_use(treatment: str, offered: str, tmp_path: Path) -> None:
+    finding = found(f"{AT_3} = {treatment} }}\n", tmp_path)[0]
+    assert offered in finding.remedy
+    assert treatment not in finding.remedy

@@ -129,3 +129,15 @@ def test_at_ten_equilibrium_separations_the_energy_is_that_of_separated_atoms(tm
     free = text(cutoff="", grid="grid = { from = 2.5, to = 38.1637, rows = 3 }\n")
     rows = rows_of(interaction(free, tmp_path), EV)
     assert abs(rows.energy[-1]) < 1e-5 * 0.01
+
+
+@pytest.mark.parametrize("treatment", ['"switch", from = 7', '"shifted-force"', '"force-switch", from = 7'])
+@pytest.mark.parametrize("at", ["9", "9.1", "11"])
+def test_energy_and_force_at_the_cutoff_are_exactly_zero_in_any_unit(treatment: str, at: str, tmp_path: Path) -> None:
+    cutoff = f"cutoff = {{ at = {at}, treatment = {treatment} }}\n"
+    known = interaction(text(cutoff=cutoff, grid=GRID.replace("to = 9", f"to = {at}")), tmp_path)
+    for units in (EV, KJ):
+        rows = rows_of(known, units)
+        assert rows.energy is not None
+        assert rows.force is not None
+        assert (rows.energy[-1], rows.force[-1]) == (0.0, 0.0)

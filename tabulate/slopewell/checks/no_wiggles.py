@@ -29,13 +29,22 @@ def look(facts: PotentialFacts) -> Iterator[Finding]:
                 level=level,
                 says=f"The spline has {len(extra)} {kind}{'s' * (len(extra) > 1)} that the points do not "
                 f"show, at {listing} {unit}.",
-                remedy='Add points there, use spline = "monotone", or "smoothing" if the points scatter.',
+                remedy=_remedy(facts.potential.formula),
                 start=facts.length(extra[0]),
                 end=facts.length(extra[-1]),
                 measured=float(len(extra)),
                 limit=0.0,
                 unit="1",
             )
+
+
+def _remedy(formula: str) -> str:
+    """Return what helps other than the spline in use."""
+    if "monotone spline" in formula:
+        return "Add points there."
+    if "smoothing spline" in formula:
+        return 'Add points there, state larger errors of the points, or use spline = "monotone".'
+    return 'Add points there, use spline = "monotone", or "smoothing" if the points scatter.'
 
 
 def wiggles(points: Points, curve: Curve, order: int) -> list[float]:

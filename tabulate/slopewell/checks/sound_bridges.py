@@ -19,7 +19,7 @@ Array = NDArray[np.float64]
 SAMPLES = 401
 """Separations at which a bridge is held against the curves that it joins."""
 ROUNDING = 1e-12
-"""Part of the energy from which on a distance from both curves counts."""
+"""Part of the bridge's largest energy from which on a distance from both curves counts."""
 
 
 class Crossing:
@@ -65,7 +65,7 @@ class Crossing:
             curve.derivatives(self.samples, 0)[0] for curve in (self.curve, self.built.before, self.built.after)
         )
         out = np.maximum(between - np.fmax(before, after), np.fmin(before, after) - between)
-        out = np.where(np.isfinite(out) & (out > ROUNDING * np.abs(between)), out, 0.0)
+        out = np.where(np.isfinite(out) & (out > ROUNDING * np.abs(between).max()), out, 0.0)
         most = int(np.argmax(out))
         return float(self.samples[most]), max(float(out[most]), 0.0)
 
@@ -84,6 +84,8 @@ def look(facts: PotentialFacts) -> Iterator[Finding]:
         if crossing.falls_below_zero:
             faults.append("falls below zero between two positive ends")
         place, size = crossing.bulge()
+        if not (faults or size):
+            continue
         height = facts.energy(size)
         bulge = (
             f"bulges by {height:.4g} {facts.units.energy.text} beyond both curves, at {facts.length(place):.6g} {unit}"

@@ -19,7 +19,7 @@ from .tree import Tree
 
 NARROWEST = Fraction(1, 2**44)
 """Width, relative to the whole stretch, below which a stretch is left undecided."""
-MOST_STRETCHES = 20_000
+MOST_STRETCHES = 4_000
 CONTACT = 1e-22
 """Size of a boundary coefficient, against the largest one, that counts as an exact zero."""
 

@@ -95,7 +95,7 @@ def test_with_an_error_nothing_is_written_and_the_way_out_is_said(
 ) -> None:
     main(["tabulate", "error.toml"])
     assert capsys.readouterr().out.endswith(
-        "Nothing was written. Mend the errors, or accept a check by --accept CHECK.\n"
+        "Nothing was written. Mend the errors, or accept them by --accept cutoff-steps.\n"
     )
     assert not (write / "pair.h5").exists()
 

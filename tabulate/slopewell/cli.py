@@ -124,7 +124,8 @@ def _tabulate(options: argparse.Namespace) -> int:
     console = _console()
     console.print()
     if not done.written:
-        console.print("Nothing was written. Mend the errors, or accept a check by --accept CHECK.", style="bold")
+        options_of = " ".join(f"--accept {name}" for name in done.stopped_by)
+        console.print(f"Nothing was written. Mend the errors, or accept them by {options_of}.", style="bold")
         return FOUND
     for path in done.written:
         console.print(f"wrote {path}", highlight=False, markup=False, soft_wrap=True)

@@ -79,7 +79,9 @@ def _convert(options: argparse.Namespace) -> int:
     if not done.written:
         print_report(done.report, out)
         out.print()
-        out.print("Nothing was written. Mend the errors (--mend MISTAKE), or accept a check by --accept CHECK.")
+        errors = dict.fromkeys(f.check for s in done.report.subjects for f in s.findings if f.level == "error")
+        accepting = " ".join(f"--accept {name}" for name in errors if name not in options.accept)
+        out.print(f"Nothing was written. Mend the errors (--mend MISTAKE), or accept them by {accepting}.")
         return FOUND
     for line in done.table.history:
         out.print(line, soft_wrap=True)

@@ -20,10 +20,11 @@ from .workflow import Track, check_document, silently
 
 @dataclass(frozen=True, slots=True)
 class Tabulated:
-    """What ``tabulate`` did: what it found, and the files it wrote (none where an error stands)."""
+    """What ``tabulate`` did: what it found, the files it wrote, and the checks that kept it from writing."""
 
     report: Report
     written: tuple[Path, ...]
+    stopped_by: tuple[str, ...] = ()
 
 
 def tabulate(
@@ -59,10 +60,10 @@ def tabulate(
     found = targets(document, Path(path).parent if into is None else Path(into))
     subject, facts = check_document(document, track=track)
     stopping = {ERROR, WARNING} if strict else {ERROR}
-    errors = {finding.check for finding in subject.findings if finding.level in stopping}
+    errors = dict.fromkeys(finding.check for finding in subject.findings if finding.level in stopping)
     subject = replace(subject, accepted=tuple(name for name in accepted if name in errors))
-    if errors - set(accepted):
-        return Tabulated(Report((subject,)), ())
+    if stopped := tuple(name for name in errors if name not in accepted):
+        return Tabulated(Report((subject,)), (), stopped)
     tables = {units: _rows(facts, units, track) for units in unit_systems(found)}
     digits = tuple(finding for target in found for finding in _digits(target, facts, tables[target.units]))
     prints = tuple(record for target in found for record in _printed(target, facts))

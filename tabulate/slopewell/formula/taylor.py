@@ -36,7 +36,7 @@ Series = list[Any]
 
 LARGEST_WHOLE_POWER = 2**20
 """Size up to which a whole power is a chain of products, each right to rounding."""
-BLOCK = 4096
+BLOCK = 16384
 """Separations worked on at a time, so that intermediate arrays stay in the fast cache."""
 
 

@@ -13,7 +13,11 @@ from ..showing import Shown
 from ..units import UnitSystem
 
 SPACINGS = ("separation", "separation-squared", "inverse", "logarithmic")
+EVEN_IN = {"separation": "r", "separation-squared": "r²", "inverse": "1/r", "logarithmic": "log r"}
+"""What the rows of each spacing are even in, for people."""
 INTERPOLATIONS = ("linear", "cubic-hermite", "cubic-spline", "quintic-hermite")
+FEWEST_ROWS = {"linear": 2, "cubic-hermite": 2, "cubic-spline": 4, "quintic-hermite": 2}
+"""Rows that each interpolation rule needs at least; a spline's four hold for all its ends."""
 ENDS = ("clamped", "natural", "not-a-knot")
 
 

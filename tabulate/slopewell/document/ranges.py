@@ -9,12 +9,10 @@ from typing import Any
 from ..potential import Cutoff
 from ..potential.cutoff import SWITCHED
 from ..units import UnitSystem
-from .model import Grid
+from .model import FEWEST_ROWS, Grid
 from .setting import Setting
 from .values import Notes, read_quantity
 
-FEWEST = 4
-"""Rows of a cubic spline, whatever its ends."""
 TOLERANCES = (("tolerance", "energy"), ("force-tolerance", "energy length^-1"))
 
 
@@ -35,8 +33,9 @@ def read_grid(notes: Notes, path: str, entry: Mapping[str, Any], setting: Settin
     if end <= start:
         notes.add(f"{place}.to", "The grid ends before it starts.", "Let to be larger than from.")
         return None
-    if given.get("interpolation") == "cubic-spline" and given.get("rows", FEWEST) < FEWEST:
-        says = f"A cubic spline needs {FEWEST} rows at least."
+    rule = given.get("interpolation", "cubic-hermite")
+    if given.get("rows", FEWEST_ROWS[rule]) < FEWEST_ROWS[rule]:
+        says = f"Reading by {rule} needs {FEWEST_ROWS[rule]} rows at least."
         notes.add(f"{place}.rows", says, "Give more rows, or read by another rule.")
         return None
     tolerances = [_tolerance(notes, f"{place}.{key}", given.get(key), powers, units) for key, powers in TOLERANCES]
@@ -45,7 +44,7 @@ def read_grid(notes: Notes, path: str, entry: Mapping[str, Any], setting: Settin
         end=end,
         rows=given.get("rows"),
         spacing=given.get("spacing", "separation"),
-        interpolation=given.get("interpolation", "cubic-hermite"),
+        interpolation=rule,
         ends=given.get("ends", "clamped"),
         tolerance=tolerances[0],
         force_tolerance=tolerances[1],

@@ -6,10 +6,10 @@ from collections.abc import Iterable, Sequence
 from itertools import groupby
 from typing import Any
 
+from ..document.model import EVEN_IN
 from ..units import UnitSystem
 
 HEAD = ("rows even in", "read by", "rows", "bytes", "force error", "drift")
-EVEN_IN = {"separation": "r", "separation-squared": "r²", "inverse": "1/r", "logarithmic": "log r"}
 
 
 def plan_lines(plans: Iterable[Any], units: UnitSystem) -> list[str]:

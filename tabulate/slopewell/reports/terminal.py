@@ -9,6 +9,7 @@ from rich.console import Console
 from rich.text import Text
 
 from ..checks import Finding
+from ..document.model import EVEN_IN
 from ..problems import Problem
 from ..units import UnitSystem, unit_system
 from .origins import pair_lines
@@ -170,9 +171,6 @@ def text_line(record: dict[str, Any]) -> tuple[str, str]:
         return f"in {record['file']}", "no bound could be proved"
     errors = f"{record['energy_error_bound']:.3g} {energy} and {record['force_error_bound']:.3g} {energy}/{length}"
     return f"in {record['file']}", f"{errors} with the digits it prints"
-
-
-EVEN_IN = {"separation": "r", "separation-squared": "r²", "inverse": "1/r", "logarithmic": "log r"}
 
 
 def print_finding(finding: Finding, console: Console) -> None:

@@ -6,12 +6,12 @@ from collections.abc import Callable
 from math import isfinite
 
 from ..document import Grid
+from ..document.model import FEWEST_ROWS
 from ..problems import Problem, UnusableInput
 from .bounds import ErrorBounds
 from .rules import RULES
 
 MOST_ROWS = 10_000_000
-FEWEST_ROWS = {"linear": 2, "cubic-hermite": 2, "quintic-hermite": 2, "cubic-spline": 4}
 
 
 def rows_needed(

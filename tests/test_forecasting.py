@@ -169,3 +169,8 @@ def test_masses_and_densities() -> None:
             read_masses([wrong])
     with pytest.raises(UnusableInput):
         read_density("1 nm")
+
+
+def test_a_mass_of_a_species_that_is_not_there_is_refused() -> None:
+    with pytest.raises(UnusableInput, match='no species "Argon"'):
+        predict(Path(__file__).parent.parent / "samples" / "argon.toml", masses={"Argon": 39.95})

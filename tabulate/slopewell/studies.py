@@ -9,7 +9,7 @@ from pathlib import Path
 from .document import Document, Expectation, Interaction, parse_source, read_document, understand
 from .predictions.curve import EnergyCurve, from_potential, from_rows
 from .predictions.figures import System
-from .problems import Problem, UnusableInput
+from .problems import Problem, UnusableInput, nearest
 from .table import Rows, tabulate_rows
 from .table.bounds import error_bounds
 from .table.rowcount import row_count
@@ -85,11 +85,21 @@ def study(
     UnusableInput
         If it can't be used.
     """
-    how = reading or Reading()
+    studied = _studied(path, reading or Reading(), document, masses or {})
+    species = studied.table.species
+    for name in masses or {}:
+        if name not in species:
+            raise UnusableInput(
+                [Problem("--mass", f'There is no species "{name}".', nearest(name, species))], str(path)
+            )
+    return studied
+
+
+def _studied(path: str | Path, how: Reading, document: str | Path | None, masses: Mapping[str, float]) -> Studied:
     if not is_table(path, how):
         source = read_document(path)
         rows = {one.potential.name: _rows(one, source.units) for one in source.interactions}
-        return _with_document(source, rows, source.units, masses or {})
+        return _with_document(source, rows, source.units, masses)
     loaded = load(path, how)
     table = loaded.table
     for one in table.interactions:
@@ -103,12 +113,12 @@ def study(
         if len(rows) == len(names) == 1:
             rows = {names[0]: replace(next(iter(rows.values())), name=names[0])}
         if set(rows) <= set(names):
-            return replace(_with_document(found, rows, table.units, masses or {}), file=str(path))
+            return replace(_with_document(found, rows, table.units, masses), file=str(path))
     text = not is_own(Path(path), how)
     pairs = {_pair(name, text=text): one for name, one in rows.items()}
     species = tuple(dict.fromkeys(name for pair in pairs for name in pair))
     curves = {pair: from_rows(one, table.units) for pair, one in pairs.items()}
-    return Studied(str(path), table.title, table.units, System(species, curves, masses or {}), rows=pairs)
+    return Studied(str(path), table.title, table.units, System(species, curves, masses), rows=pairs)
 
 
 def _rows(one: Interaction, units: UnitSystem) -> Rows:
